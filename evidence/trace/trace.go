@@ -1,0 +1,84 @@
+// Package trace holds what an instrument recorded, as types: chromatograms in minutes and detector counts, and the
+// facts that a raw file states about itself. It reads nothing; each file format has a sub-package that does, and
+// package formats tells which one a file needs.
+package trace
+
+import "fmt"
+
+// A RetentionTime is a time since injection, in minutes.
+type RetentionTime float64
+
+// Polarity of the ions that were monitored.
+type Polarity string
+
+const (
+	Positive Polarity = "positive"
+	Negative Polarity = "negative"
+)
+
+// A Transition names what a chromatogram followed: precursor and product ion by their m/z (dimensionless, as the file
+// gives them), and the polarity. The zero values mean that the file does not say.
+type Transition struct {
+	PrecursorMZ float64  `json:"precursor_mz,omitempty"`
+	ProductMZ   float64  `json:"product_mz,omitempty"`
+	Polarity    Polarity `json:"polarity,omitempty"`
+}
+
+// A Chromatogram is one recorded trace. TimeMin and Intensity have the same length; times are in minutes and strictly
+// increase; every value is finite.
+type Chromatogram struct {
+	ID         string // as in the file, unique in it
+	Kind       Kind
+	Transition Transition
+	TimeMin    []float64
+	Intensity  []float64 // detector counts, as acquired
+}
+
+// Kind of a chromatogram.
+type Kind string
+
+const (
+	SRM        Kind = "srm"        // selected reaction monitoring
+	SIM        Kind = "sim"        // selected ion monitoring, or an extracted ion
+	TIC        Kind = "tic"        // total ion current
+	Absorption Kind = "absorption" // ultraviolet or visible detector
+	Other      Kind = "other"
+)
+
+// A Warning is something wrong in a file that did not stop it from being read.
+type Warning struct {
+	Code   string `json:"code"` // stable name, such as "index-offset"
+	Detail string `json:"detail"`
+}
+
+// A File is what one raw file holds.
+type File struct {
+	Format        string // "mzML" or "delimited text"
+	FormatVersion string // as the file states it
+	StartTime     string // acquisition start as the file states it (RFC 3339), or empty
+	Instrument    string // model and serial number as the file states them, or empty
+	Software      string // acquisition software and version as the file states them, or empty
+	SampleCode    string // sample name or code as the file states it, or empty
+	Chromatograms []Chromatogram
+	Warnings      []Warning
+}
+
+// A SyntaxError says where a file is wrong, what was found and what would be accepted. Line and Column count from 1;
+// 0 means that they are not known.
+type SyntaxError struct {
+	File         string
+	Line, Column int
+	Got, Want    string
+	Hint         string
+}
+
+func (e *SyntaxError) Error() string {
+	where := e.File
+	if e.Line > 0 {
+		where = fmt.Sprintf("%s:%d", where, e.Line)
+		if e.Column > 0 {
+			where = fmt.Sprintf("%s:%d", where, e.Column)
+		}
+	}
+	return fmt.Sprintf("%s: got %s, want %s", where, e.Got, e.Want)
+}
