@@ -18,6 +18,7 @@ type Record struct {
 	Format   string               `json:"format"`
 	Engine   Engine               `json:"engine"`
 	Inputs   []InputFile          `json:"inputs"`
+	Steps    []Step               `json:"steps"`
 	Case     casefile.Case        `json:"case"`
 	Method   casefile.Method      `json:"method"`
 	Sequence []casefile.Injection `json:"sequence"`
@@ -30,6 +31,12 @@ type Record struct {
 type Engine struct {
 	Name    string `json:"name"`
 	Version string `json:"version"`
+}
+
+// A Step names the algorithm, with its version, that one kind of recorded value comes from.
+type Step struct {
+	Value     string `json:"value"`
+	Algorithm string `json:"algorithm"`
 }
 
 // An InputFile is one file of the case folder.
@@ -125,10 +132,11 @@ type Reference struct {
 	Ratios            []ReferenceRatio `json:"ratios"`
 }
 
-// A ReferenceRatio is the area of a qualifier over that of the quantifier, in the reference injections. RelativeToBase
-// is the same as a share of the most abundant of the analyte's ions, and BaseTrace names that ion.
+// A ReferenceRatio is the area of one of the analyte's ions over that of its most abundant one (the base), over the
+// reference injections in which both have a peak.
 type ReferenceRatio struct {
 	Trace string    `json:"trace"`
+	Base  bool      `json:"base,omitempty"`
 	Ratio Statistic `json:"ratio"`
 }
 
