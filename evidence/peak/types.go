@@ -6,12 +6,17 @@ package peak
 
 // Parameters steer detection and integration; they come from the method and are recorded with every peak.
 type Parameters struct {
-	SmoothingPoints int     `json:"smoothing_points"`        // odd number of points of the Savitzky–Golay window, used for detection only
-	MinSN           float64 `json:"min_signal_to_noise"`     // a peak must be at least this high, in units of noise
-	MinWidthMin     float64 `json:"min_width_min"`           // narrowest width at half height that is a peak, minutes
-	Shared          Shared  `json:"shared_valley"`           // how two peaks that share a valley are divided
-	ValleyFraction  float64 `json:"valley_fraction"`         // see Shared
-	EdgeFraction    float64 `json:"edge_fraction,omitempty"` // see Detect
+	SmoothingPoints int     `json:"smoothing_points"`    // odd number of points of the Savitzky–Golay window, used for detection only
+	MinSN           float64 `json:"min_signal_to_noise"` // a peak must be at least this high, in units of noise
+	MinWidthMin     float64 `json:"min_width_min"`       // narrowest width at half height that is a peak, minutes; 0 is no limit
+	Shared          Shared  `json:"shared_valley"`       // how two peaks that share a valley are divided
+
+	// ValleyFraction is the depth at which a shared valley stops being one: when it lies lower above the common baseline than
+	// this fraction of the smaller peak's height, the two are separate peaks with baselines of their own. 0 keeps all in common.
+	ValleyFraction float64 `json:"valley_fraction"`
+
+	// EdgeFraction is the fraction of its height to which a flank is followed; see Detect. 0 stands for 2^-11 (0.05 %).
+	EdgeFraction float64 `json:"edge_fraction,omitempty"`
 }
 
 // Shared is the treatment of two peaks that share a valley.
@@ -41,8 +46,16 @@ type Peak struct {
 	BaselineEndMin      float64 `json:"baseline_end_min"`
 	BaselineEndCounts   float64 `json:"baseline_end_counts"`
 
-	Noise         float64 `json:"noise_counts"` // robust standard deviation of the signal-free stretches
-	SignalToNoise float64 `json:"signal_to_noise"`
+	// Acquired points whose mean each end of the line passes through: 1 where it joins the signal itself.
+	BaselineStartPoints int `json:"baseline_start_points"`
+	BaselineEndPoints   int `json:"baseline_end_points"`
+
+	// AreaStdU is the standard uncertainty of Area that follows from the noise on the points summed and on those that fix
+	// the baseline, taken as white. Counting noise of the signal itself is not in it.
+	AreaStdU float64 `json:"area_std_u_counts_min"`
+
+	Noise         float64 `json:"noise_counts"`    // robust standard deviation of the signal-free stretches; see Detect
+	SignalToNoise float64 `json:"signal_to_noise"` // Height/Noise, not the pharmacopoeias' 2H/h
 
 	Symmetry      *float64 `json:"symmetry_5pct,omitempty"`  // (a+b)/2a at 5 % height (USP <621>, Ph. Eur. 2.2.46)
 	WidthHalfMin  *float64 `json:"width_half_min,omitempty"` // width at half height
@@ -52,8 +65,42 @@ type Peak struct {
 
 	StartKind EdgeKind `json:"start_kind"`
 	EndKind   EdgeKind `json:"end_kind"`
-	Algorithm string   `json:"algorithm"`       // such as "trapezoid@1"
-	Flags     []string `json:"flags,omitempty"` // such as "saturated", "cut-at-end"
+	Algorithm string   `json:"algorithm"`       // AreaAlgorithm
+	Flags     []string `json:"flags,omitempty"` // of the flags below, in their order
+}
+
+// The published versions of the algorithms. A version never changes its results.
+const (
+	NoiseAlgorithm     = "noise-quiet-differences@1" // see Detect
+	DetectionAlgorithm = "sg-walk@1"                 // see Detect
+	AreaAlgorithm      = "trapezoid@1"               // see Integrate
+)
+
+// What else can stand in Result.NoiseMethod.
+const (
+	NoiseWholeTrace = "noise-whole-trace@1" // too few points lie outside peaks: estimated over the whole trace
+	NoiseFloor      = "noise-floor@1"       // the trace shows no noise: 2^-30 of its range
+)
+
+// Flags of a peak.
+const (
+	FlagSaturated        = "saturated"         // three or more points in a row share the highest value
+	FlagCutAtStart       = "cut-at-start"      // the trace begins before the peak does
+	FlagCutAtEnd         = "cut-at-end"        // the trace ends before the peak does
+	FlagSpike            = "spike"             // one single point stands above half height
+	FlagFewPoints        = "few-points"        // fewer than five points stand above half height
+	FlagNegativeBaseline = "negative-baseline" // the baseline lies more than three noises below zero counts
+	FlagNegativeArea     = "negative-area"     // the area is not above zero
+	FlagApexAtLimit      = "apex-at-limit"     // the highest point is next to a limit: no apex inside
+	FlagNoiseFloor       = "noise-floor"       // no noise was measurable: signal-to-noise rests on a floor
+)
+
+// A Result is what Detect found in one trace.
+type Result struct {
+	Peaks       []Peak  // in order of time; limits do not overlap
+	Noise       float64 // counts; 0 only for a trace of one constant value
+	NoisePoints int     // acquired points that the noise was estimated from
+	NoiseMethod string  // NoiseAlgorithm, NoiseWholeTrace or NoiseFloor
 }
 
 // EdgeKind tells how a peak ends on one side.

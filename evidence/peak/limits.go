@@ -1,0 +1,250 @@
+package peak
+
+import "math"
+
+const (
+	walkRounds   = 4
+	reliable     = 4.0  // a level is looked for down to this many standard deviations of smoothed noise
+	edgeOfNoise  = 0.1  // of the noise: a flank is not followed further down than this
+	halvingWidth = 0.45 // of the half width: one more halving, where no second level can be read
+	cutFraction  = 0.01 // of the height: a flank that ends above this is cut
+	minAnchor    = 3    // points behind each end of a baseline, if the trace has them
+)
+
+// setLimits finds the limits of all tops, first each by itself, then with the baseline of the cluster that it turns out to
+// belong to, until nothing moves.
+func (d *detector) setLimits(tops []top) {
+	for i := range tops {
+		d.firstLine(tops, i)
+	}
+	for range walkRounds {
+		moved := false
+		for i := range tops {
+			o := tops[i]
+			d.walk(tops, i, -1)
+			d.walk(tops, i, +1)
+			moved = moved || o.left != tops[i].left || o.right != tops[i].right
+		}
+		d.join(tops)
+		d.clusterLines(tops)
+		if !moved {
+			break
+		}
+	}
+}
+
+// bounds returns, on one side of top i, the valley shared with its neighbour (-1 without one) and the last point that a
+// limit may take: the neighbour's apex, or the end of the trace.
+func (d *detector) bounds(tops []top, i, step int) (valley, last int) {
+	switch {
+	case step < 0 && i > 0:
+		return tops[i-1].valley, tops[i-1].apex
+	case step < 0:
+		return -1, 0
+	case i+1 < len(tops):
+		return tops[i].valley, tops[i+1].apex
+	}
+	return -1, len(d.s) - 1
+}
+
+// firstLine joins the lowest points on both sides of the apex, within a distance of at least four half widths.
+func (d *detector) firstLine(tops []top, i int) {
+	_, first := d.bounds(tops, i, -1)
+	_, last := d.bounds(tops, i, +1)
+	l := d.foot(tops[i].apex, -1, first)
+	r := d.foot(tops[i].apex, +1, last)
+	tops[i].line = line{d.t[l], d.s[l], d.t[r], d.s[r]}
+}
+
+func (d *detector) foot(apex, step, last int) int {
+	room := (last - apex) * step
+	lowest, looked := apex, 0
+	for reach := d.p.SmoothingPoints; ; reach *= 2 {
+		reach = min(reach, room)
+		for ; looked < reach; looked++ {
+			if k := apex + step*(looked+1); d.s[k] < d.s[lowest] {
+				lowest = k
+			}
+		}
+		level := (d.s[apex] + d.s[lowest]) / 2
+		width := 1
+		for width < reach && d.s[apex+step*width] >= level {
+			width++
+		}
+		if 4*width <= reach || reach == room {
+			return lowest
+		}
+	}
+}
+
+// walk sets the limit of top i on one side. It goes down from the apex to half height and on to the lowest level, a half
+// to a power, that the noise leaves readable, and from there as far as a flank falling at the same rate would need to
+// come down to the edge fraction (or to a tenth of the noise).
+func (d *detector) walk(tops []top, i, step int) {
+	p := &tops[i]
+	valley, last := d.bounds(tops, i, step)
+	stop := last
+	if valley >= 0 {
+		stop = valley
+	}
+	height := d.s[p.apex] - p.line.at(d.t[p.apex])
+	depth, level := d.levels(height)
+	halfWidth, width, k := d.descend(p, step, stop, height, math.Ldexp(height, -level))
+	if width == 0 {
+		p.setLimit(step, stop, end{trace: valley < 0, cut: valley < 0})
+		return
+	}
+	rate := float64(halvingWidth * halfWidth)
+	if level > 1 {
+		rate = (width - halfWidth) / float64(level-1)
+	}
+	reach := width + float64(rate*max(depth-float64(level), 0))
+	for k != last && math.Abs(d.t[k]-d.t[p.apex]) < reach {
+		k += step
+	}
+	var e end
+	if left := reach - math.Abs(d.t[k]-d.t[p.apex]); valley < 0 && left > 0 {
+		e.trace = true
+		e.cut = left > float64(rate*(depth-halvings(cutFraction)))
+	}
+	p.setLimit(step, k, e)
+}
+
+// levels returns how many halvings of the height there are to the edge of a peak, and how many of them can be read.
+func (d *detector) levels(height float64) (depth float64, readable int) {
+	if !(height > 0) {
+		return 1, 1
+	}
+	f := max(d.p.edge(), float64(edgeOfNoise*d.noise/height))
+	depth = halvings(min(f, 0.5))
+	readable = 1
+	for float64(readable+1) <= depth && math.Ldexp(height, -readable-1) >= float64(reliable*d.smoothNoise) {
+		readable++
+	}
+	return depth, readable
+}
+
+// descend returns the distances in time from the apex at which the smoothed trace falls to half of height and to level
+// above the line, and the first point below level; 0 where the trace does not come down so far before stop.
+func (d *detector) descend(p *top, step, stop int, height, level float64) (halfWidth, width float64, k int) {
+	apex := p.apex
+	before := height
+	for k = apex; k != stop; {
+		k += step
+		v := d.s[k] - p.line.at(d.t[k])
+		if halfWidth == 0 && v < height/2 {
+			halfWidth = d.crossing(apex, k, step, before, v, height/2)
+		}
+		if v < level || v <= 0 {
+			return halfWidth, d.crossing(apex, k, step, before, v, level), k
+		}
+		before = v
+	}
+	return halfWidth, 0, k
+}
+
+// crossing is the distance in time from the apex to where the straight piece ending at point k, from value a to b, passes
+// through level.
+func (d *detector) crossing(apex, k, step int, a, b, level float64) float64 {
+	t := d.t[k-step]
+	if a > b {
+		t += float64((d.t[k] - t) * ((a - level) / (a - b)))
+	}
+	return math.Abs(t - d.t[apex])
+}
+
+func (p *top) setLimit(step, k int, e end) {
+	if step < 0 {
+		p.left, p.leftEnd = k, e
+	} else {
+		p.right, p.rightEnd = k, e
+	}
+}
+
+// join marks the neighbours whose limits overlap, and puts both limits at the valley between them.
+func (d *detector) join(tops []top) {
+	for i := range tops {
+		tops[i].joined = false
+		if i == 0 {
+			tops[i].leftValley = false
+		}
+		if i+1 == len(tops) {
+			break
+		}
+		next := &tops[i+1]
+		next.leftValley = tops[i].right >= next.left
+		if next.leftValley {
+			tops[i].joined = true
+			tops[i].right, next.left = tops[i].valley, tops[i].valley
+		}
+	}
+}
+
+// clusterLines gives the tops of every cluster the same baseline.
+func (d *detector) clusterLines(tops []top) {
+	for i := 0; i < len(tops); {
+		last := clusterEnd(tops, i)
+		a, b := d.anchors(tops, i, last)
+		l := line{mean(d.t, a), mean(d.s, a), mean(d.t, b), mean(d.s, b)}
+		for ; i <= last; i++ {
+			tops[i].line = l
+		}
+	}
+}
+
+// clusterEnd returns the index of the last top of the cluster that begins with top i.
+func clusterEnd(tops []top, i int) int {
+	for tops[i].joined {
+		i++
+	}
+	return i
+}
+
+// A span is a stretch of acquired points, both ends included.
+type span struct{ from, to int }
+
+func (s span) len() int { return s.to - s.from + 1 }
+
+func mean(v []float64, s span) float64 {
+	var sum float64
+	for _, x := range v[s.from : s.to+1] {
+		sum += x - v[s.from]
+	}
+	return v[s.from] + sum/float64(s.len())
+}
+
+// anchors returns the points that fix the baseline of the cluster of tops first to last: from each limit outwards as many
+// as the peak there has above half height, but not into the next cluster. At least three are taken, the missing ones from
+// inside; where the flank is cut, only the last point of the trace.
+func (d *detector) anchors(tops []top, first, last int) (a, b span) {
+	p, q := &tops[first], &tops[last]
+	low, high := 0, len(d.s)-1
+	if first > 0 {
+		low = min(tops[first-1].right, p.left)
+	}
+	if last+1 < len(tops) {
+		high = max(tops[last+1].left, q.right)
+	}
+	a = span{max(p.left-d.halfPoints(p)+1, low), p.left}
+	if short := minAnchor - a.len(); short > 0 && !p.leftEnd.cut {
+		a.to = min(a.to+short, p.apex)
+	}
+	b = span{q.right, min(q.right+d.halfPoints(q)-1, high)}
+	if short := minAnchor - b.len(); short > 0 && !q.rightEnd.cut {
+		b.from = max(b.from-short, q.apex)
+	}
+	return a, b
+}
+
+// halfPoints counts the points of a top above half its height, at least three.
+func (d *detector) halfPoints(p *top) int {
+	level := (d.s[p.apex] + p.line.at(d.t[p.apex])) / 2
+	n := 1
+	for k := p.apex - 1; k >= p.left && d.s[k] > level; k-- {
+		n++
+	}
+	for k := p.apex + 1; k <= p.right && d.s[k] > level; k++ {
+		n++
+	}
+	return max(n, minAnchor)
+}
