@@ -52,7 +52,8 @@ func (d *detector) divide(tops []top, whole baseline) {
 }
 
 // valleyAnchor tells whether the valley between p and q separates them, and which points then fix the baseline there. They
-// are those around a valley below ValleyFraction, or else, if peaks are integrated valley to valley, the valley itself.
+// are those around a valley below ValleyFraction that stand no higher than half of it, or else, if peaks are integrated
+// valley to valley, the valley itself.
 func (d *detector) valleyAnchor(p, q *top) (at span, kind EdgeKind, apart bool) {
 	v := p.valley
 	height := func(k int) float64 { return d.s[k] - p.line.at(d.t[k]) }
@@ -61,10 +62,10 @@ func (d *detector) valleyAnchor(p, q *top) (at span, kind EdgeKind, apart bool) 
 	if d.p.ValleyFraction == 0 || height(v) >= level {
 		return at, AtValley, d.p.Shared == Valley
 	}
-	for at.from-1 > p.apex && height(at.from-1) < level {
+	for at.from-1 > p.apex && height(at.from-1) < level/2 {
 		at.from--
 	}
-	for at.to+1 < q.apex && height(at.to+1) < level {
+	for at.to+1 < q.apex && height(at.to+1) < level/2 {
 		at.to++
 	}
 	return at, AtBaseline, true

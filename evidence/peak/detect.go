@@ -16,8 +16,9 @@ const minRise = 5.0
 // all peaks. Each such point's distance from the straight line through its two neighbours, divided by the factor by
 // which that distance is noisier than a point, is free of drift; distances beyond three times their scaled median
 // absolute value are left out, and the root mean square of the rest is corrected for that. Where at least three blocks
-// of twelve quiet points can be made, the median of the variances about their own straight lines is a second estimate,
-// and the larger of the two counts: a filter that smooths the noise does not make peaks more significant. As peaks and
+// of 24 quiet points can be made (or else of 12), the median of the variances about their own straight lines is a second
+// estimate, and the larger of the two counts: a filter that smooths the noise does not make peaks more significant. The
+// smoothed trace's own noise is had from such blocks too. As peaks and
 // noise depend on each other, both are found again until the noise settles (at most four times). With fewer than ten
 // quiet points the whole trace is used (noise-whole-trace@1). A trace without measurable noise gets 2^-30 of its range
 // (noise-floor@1), and its peaks carry a flag.
@@ -103,7 +104,8 @@ func newDetector(c trace.Chromatogram, p Parameters, w *workspace) *detector {
 	}
 	residuals(d.t, d.y, w.residual)
 	d.keep = math.Sqrt(evenWeights(p.SmoothingPoints)[0])
-	d.setNoise(firstNoise(w.residual, w.scratch), n-2, NoiseWholeTrace)
+	d.setNoise(max(firstNoise(w.residual, w.scratch), firstBlockNoise(d.t, d.y, w.scratch)), n-2, NoiseWholeTrace)
+	d.smoothNoise = max(d.smoothNoise, firstBlockNoise(d.t, d.s, w.scratch))
 	return d
 }
 
@@ -123,11 +125,12 @@ func (d *detector) run() *Result {
 		if pass == maxPasses {
 			break
 		}
-		noise, points := d.outside(tops)
+		noise, smoothNoise, points := d.outside(tops)
 		if points == 0 || noise == d.noise || (noise <= d.floor && d.method == NoiseFloor) {
 			break
 		}
 		d.setNoise(noise, points, NoiseAlgorithm)
+		d.smoothNoise = max(d.smoothNoise, smoothNoise)
 	}
 	r := &Result{Noise: d.noise, NoisePoints: d.points, NoiseMethod: d.method}
 	if len(tops) > 0 {
@@ -142,8 +145,8 @@ func (d *detector) run() *Result {
 	return r
 }
 
-// outside estimates the noise from the points outside the limits of the tops.
-func (d *detector) outside(tops []top) (float64, int) {
+// outside estimates the noise, and that of the smoothed trace, from the points outside the limits of the tops.
+func (d *detector) outside(tops []top) (noise, smoothNoise float64, points int) {
 	quiet := d.w.quiet
 	for i := range quiet {
 		quiet[i] = true
@@ -153,7 +156,8 @@ func (d *detector) outside(tops []top) (float64, int) {
 			quiet[k] = false
 		}
 	}
-	return quietNoise(d.t, d.y, d.w.residual, quiet, d.w.scratch)
+	noise, points = quietNoise(d.t, d.y, d.w.residual, quiet, d.w.scratch)
+	return noise, blockNoise(d.t, d.s, quiet, d.w.scratch), points
 }
 
 // search finds the peaks with the noise as it is now.

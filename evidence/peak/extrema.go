@@ -2,13 +2,21 @@ package peak
 
 import "math"
 
-// significance is how far the smoothed trace must rise to a top and fall from it, in standard deviations of smoothed noise.
-const significance = 4.0
+const (
+	// significance is how far the smoothed trace must rise to a top and fall from it, in standard deviations of smoothed
+	// noise.
+	significance = 4.0
+	// splitting is how deep a valley must be, in the same unit, to divide a top whose other flank falls more than twice as
+	// far: many valleys could form by chance along a broad top or a tail.
+	splitting = 6.0
+)
 
 // A top is a maximum of the smoothed trace on the way to becoming a peak. Indices are those of acquired points.
 type top struct {
 	apex   int
 	valley int // lowest smoothed point between this top and the next; for the last one the end of the trace
+	before int // lowest point since the top before, and
+	after  int // up to the next one, as long as tops are being looked for
 
 	left, right       int // limits
 	leftEnd, rightEnd end
@@ -44,7 +52,7 @@ func findTops(s []float64, delta float64, tops []top) []top {
 		rising
 		falling
 	)
-	state, hi, lo := unknown, 0, 0
+	state, hi, lo, before := unknown, 0, 0, 0
 	for i, v := range s {
 		if v > s[hi] {
 			hi = i
@@ -55,39 +63,48 @@ func findTops(s []float64, delta float64, tops []top) []top {
 		switch {
 		case state != falling && v < s[hi]-delta:
 			if state == rising {
-				tops = append(tops, top{apex: hi, valley: len(s) - 1})
+				tops = append(tops, top{apex: hi, valley: len(s) - 1, before: before})
 			}
 			state, lo = falling, i
 		case state != rising && v > s[lo]+delta:
 			if len(tops) > 0 {
-				tops[len(tops)-1].valley = lo
+				tops[len(tops)-1].valley, tops[len(tops)-1].after = lo, lo
 			}
-			state, hi = rising, i
+			before, state, hi = lo, rising, i
 		}
+	}
+	if len(tops) > 0 && state == falling {
+		tops[len(tops)-1].after = lo
 	}
 	return tops
 }
 
-// mergeRipple unites neighbouring tops whose valley is no deeper than the scatter of the acquired points about the
-// smoothed trace there explains: at high signal the noise is larger than between the peaks.
+// mergeRipple unites neighbouring tops whose valley is no deeper than chance explains, with the noise between the peaks or,
+// where that is larger, the scatter of the acquired points about the smoothed trace near the valley: at high signal the
+// noise is larger.
 func (d *detector) mergeRipple(tops []top) []top {
 	out := tops[:0]
 	for _, next := range tops {
-		for len(out) > 0 {
-			prev := &out[len(out)-1]
-			smaller := prev.apex
-			if d.s[next.apex] < d.s[smaller] {
-				smaller = next.apex
-			}
-			depth := d.s[smaller] - d.s[prev.valley]
-			if depth >= float64(significance*d.scatter(smaller, prev.valley)) {
-				break
-			}
+		for len(out) > 0 && d.isRipple(&out[len(out)-1], &next) {
 			out = d.unite(out, &next)
 		}
 		out = append(out, next)
 	}
 	return out
+}
+
+// isRipple judges the valley between two neighbouring tops.
+func (d *detector) isRipple(prev, next *top) bool {
+	smaller, outside := prev.apex, prev.before
+	if d.s[next.apex] < d.s[smaller] {
+		smaller, outside = next.apex, next.after
+	}
+	depth := d.s[smaller] - d.s[prev.valley]
+	factor := significance
+	if 2*depth < d.s[smaller]-d.s[outside] {
+		factor = splitting
+	}
+	return depth < float64(factor*max(d.smoothNoise, d.scatter(smaller, prev.valley)))
 }
 
 // scatter is the noise that smoothing leaves between points a and b, as the acquired points there show it.
@@ -107,14 +124,23 @@ func (d *detector) scatter(a, b int) float64 {
 func (d *detector) unite(out []top, next *top) []top {
 	last := out[len(out)-1]
 	out = out[:len(out)-1]
+	next.before = d.lower(last.before, next.before)
 	if d.s[last.apex] >= d.s[next.apex] {
-		next.apex = last.apex
+		next.before, next.apex = last.before, last.apex
+		next.after = d.lower(last.after, next.after)
 		return out
 	}
 	if len(out) > 0 {
-		if before := &out[len(out)-1]; d.s[last.valley] < d.s[before.valley] {
-			before.valley = last.valley
-		}
+		before := &out[len(out)-1]
+		before.valley = d.lower(before.valley, last.valley)
+		before.after = before.valley
 	}
 	return out
+}
+
+func (d *detector) lower(a, b int) int {
+	if d.s[b] < d.s[a] {
+		return b
+	}
+	return a
 }

@@ -66,12 +66,19 @@ func (d *detector) foot(apex, step, last int) int {
 				lowest = k
 			}
 		}
-		level := (d.s[apex] + d.s[lowest]) / 2
-		width := 1
-		for width < reach && d.s[apex+step*width] >= level {
-			width++
+		if reach == room {
+			return lowest
 		}
-		if 4*width <= reach || reach == room {
+		fall := d.s[apex] - d.s[lowest]
+		if fall < float64(significance*d.smoothNoise) {
+			continue
+		}
+		// The last point above half height counts: a dip near a broad top does not end the peak.
+		width := reach
+		for width > 0 && d.s[apex+step*width] < d.s[apex]-fall/2 {
+			width--
+		}
+		if 4*(width+1) <= reach {
 			return lowest
 		}
 	}
@@ -161,7 +168,8 @@ func (p *top) setLimit(step, k int, e end) {
 	}
 }
 
-// join marks the neighbours whose limits overlap, and puts both limits at the valley between them.
+// join marks the neighbours whose limits overlap, or leave no room for a baseline between them, and puts both limits at the
+// valley. Room is as many points as the wider of the two has above half height.
 func (d *detector) join(tops []top) {
 	for i := range tops {
 		tops[i].joined = false
@@ -172,7 +180,8 @@ func (d *detector) join(tops []top) {
 			break
 		}
 		next := &tops[i+1]
-		next.leftValley = tops[i].right >= next.left
+		room := max(d.halfPoints(&tops[i]), d.halfPoints(next))
+		next.leftValley = next.left-tops[i].right < room
 		if next.leftValley {
 			tops[i].joined = true
 			tops[i].right, next.left = tops[i].valley, tops[i].valley

@@ -7,12 +7,20 @@ const (
 	lowerToSD   = 3.138344200661294 // 1/Φ⁻¹(5/8)
 	clipWidth   = 3.0               // in standard deviations
 	clipSD      = 1.0136            // standard deviation of a normal over that of one cut at ±3
-	noiseBlock  = 12                // points a block
-	blockMedian = 0.9341818         // median of chi-square over its degrees of freedom, for 10: 9.341818 (tables)
 	minQuiet    = 10                // differences that make an estimate
 	minBlocks   = 3
 	floorFactor = 0x1p-30
 )
+
+// blockSizes are the blocks of blockNoise, each with the median of the chi-square distribution with points - 2 degrees of
+// freedom, divided by them (tables: 21.337 for 22, 9.342 for 10).
+var blockSizes = [...]struct {
+	points int
+	median float64
+}{{24, 21.337045 / 22}, {12, 9.341818 / 10}}
+
+// blockQuartile is the lower quartile of that distribution for 22, divided by 22 (tables: 17.240).
+const blockQuartile = 17.239619 / 22
 
 // residuals writes to r, for each point but the first and last, its distance from the straight line through its two
 // neighbours, divided by the factor by which that distance is noisier than one point. A straight drift leaves nothing.
@@ -27,8 +35,8 @@ func residuals(t, y, r []float64) {
 	}
 }
 
-// firstNoise estimates the noise before any peak is known, from the lower quartile of the residuals' size: three quarters
-// of the trace may be peaks. Where that is zero the median of those above zero is taken; without any it is 0.
+// firstNoise estimates the noise before any peak is known, from the lower quartile of the residuals' size: half of the trace
+// and more may be peaks. Where that is zero the median of those above zero is taken; without any it is 0.
 func firstNoise(r, scratch []float64) float64 {
 	d := scratch[:0]
 	for _, v := range r[1 : len(r)-1] {
@@ -81,30 +89,48 @@ func quietNoise(t, y, r []float64, quiet []bool, scratch []float64) (float64, in
 	return max(sd, blockNoise(t, y, quiet, scratch)), n
 }
 
-// blockNoise returns the noise about straight lines through blocks of 12 quiet points in a row: the median of their
-// variances. Noise that a detector's filter has made smooth shows here and not in the differences. With fewer than three
-// blocks it is 0.
+// blockNoise returns the noise about straight lines through blocks of quiet points in a row: the median of their
+// variances. Noise that a filter has made smooth shows here and not in the differences. Blocks are of 24 points if there
+// are three such, or else of 12; with fewer than three of those it is 0.
 func blockNoise(t, y []float64, quiet []bool, scratch []float64) float64 {
-	v := scratch[:0]
-	run := 0
-	for i := range y {
-		if !quiet[i] {
-			run = 0
+	for _, size := range blockSizes {
+		v := blockVariances(t, y, quiet, size.points, scratch)
+		if len(v) < minBlocks {
 			continue
 		}
-		if run++; run == noiseBlock {
-			v = append(v, variance(t[i+1-noiseBlock:i+1], y[i+1-noiseBlock:i+1]))
-			run = 0
+		m := nth(v, len(v)/2)
+		if len(v)%2 == 0 {
+			m = (m + nth(v, len(v)/2-1)) / 2
 		}
+		return math.Sqrt(m / size.median)
 	}
+	return 0
+}
+
+// firstBlockNoise is that before any peak is known, from the lower quartile of the blocks of 24 points.
+func firstBlockNoise(t, y []float64, scratch []float64) float64 {
+	v := blockVariances(t, y, nil, blockSizes[0].points, scratch)
 	if len(v) < minBlocks {
 		return 0
 	}
-	m := nth(v, len(v)/2)
-	if len(v)%2 == 0 {
-		m = (m + nth(v, len(v)/2-1)) / 2
+	return math.Sqrt(nth(v, len(v)/4) / blockQuartile)
+}
+
+// blockVariances returns the variances of the blocks; all points are quiet where quiet is nil.
+func blockVariances(t, y []float64, quiet []bool, size int, scratch []float64) []float64 {
+	v := scratch[:0]
+	run := 0
+	for i := range y {
+		if quiet != nil && !quiet[i] {
+			run = 0
+			continue
+		}
+		if run++; run == size {
+			v = append(v, variance(t[i+1-run:i+1], y[i+1-run:i+1]))
+			run = 0
+		}
 	}
-	return math.Sqrt(m / blockMedian)
+	return v
 }
 
 // variance of the points about their least-squares line.
