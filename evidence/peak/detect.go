@@ -25,9 +25,9 @@ const minRise = 5.0
 //
 // Detection uses a Savitzky–Golay smoothed trace, less the median drift. A top must rise from the lowest point before and
 // fall to the lowest after by at least four standard deviations of smoothed noise. From each apex the walk goes down
-// both flanks to the lowest readable level and on, at the same rate of fall, until the flank would have come down to
-// EdgeFraction of the height or to a tenth of the noise, whichever is higher: a tail is not cut where it sinks into the
-// noise. Limits are acquired points. Neighbours whose limits overlap share the lowest point between them.
+// both flanks to the lowest readable level (half the height, a quarter, … down to 1/64) and on, at the rate of fall last
+// seen, until the flank would have come down to EdgeFraction of the height or to a tenth of the noise, whichever is
+// higher: a tail is not cut where it sinks into the noise. Limits are acquired points. Neighbours whose limits overlap share the lowest point between them.
 //
 // The baseline is straight. It passes through the mean of the acquired points from the limit outwards, as many as the
 // peak has above half height; peaks that share valleys have one baseline from the first limit to the last, and are
@@ -58,7 +58,10 @@ func Detect(c trace.Chromatogram, p Parameters) (*Result, error) {
 	return d.run(), nil
 }
 
-const maxPasses = 4
+const (
+	maxPasses = 4
+	settled   = 1.0 / 256 // relative change of the noise that asks for no other pass
+)
 
 // A detector is one run of Detect.
 type detector struct {
@@ -126,7 +129,10 @@ func (d *detector) run() *Result {
 			break
 		}
 		noise, smoothNoise, points := d.outside(tops)
-		if points == 0 || noise == d.noise || (noise <= d.floor && d.method == NoiseFloor) {
+		if points == 0 || (noise <= d.floor && d.method == NoiseFloor) {
+			break
+		}
+		if pass > 1 && math.Abs(noise-d.noise) <= float64(settled*d.noise) {
 			break
 		}
 		d.setNoise(noise, points, NoiseAlgorithm)
@@ -226,7 +232,23 @@ func (d *detector) isPeak(p *top) bool {
 	if d.y[at]-p.base.line.at(d.t[at]) < least || d.straightened(at)-own.at(d.t[at]) < least {
 		return false
 	}
-	return d.p.MinWidthMin == 0 || d.smoothWidth(p) >= d.p.MinWidthMin
+	if d.p.MinWidthMin == 0 {
+		return true
+	}
+	return d.smoothWidth(p) >= d.p.MinWidthMin && !d.isNarrowSpike(p, at)
+}
+
+// isNarrowSpike tells whether the highest point stands alone above half height, with a width under MinWidthMin, and the
+// smoothed trace rises no further than a lone point explains: smoothing makes one stray point as wide as its window.
+func (d *detector) isNarrowSpike(p *top, at int) bool {
+	s := shape{t: d.t, y: d.y, left: p.left, right: p.right, top: at, base: p.base.line}
+	h := s.height(at)
+	lone := max(0.5, 1.25*d.keep*d.keep) // the weight of the middle point is keep squared
+	if max(s.height(at-1), s.height(at+1)) > h/2 || p.rise > float64(lone*h) {
+		return false
+	}
+	w, ok := s.width(h / 2)
+	return ok && w < d.p.MinWidthMin
 }
 
 // smoothWidth is the width of the smoothed top at half height above its cluster's baseline, as far as its limits reach.
@@ -234,7 +256,7 @@ func (d *detector) smoothWidth(p *top) float64 {
 	height := d.s[p.apex] - p.line.at(d.t[p.apex])
 	width := 0.0
 	for _, side := range [2]struct{ step, stop int }{{-1, p.left}, {+1, p.right}} {
-		half, _, k := d.descend(p, side.step, side.stop, height, height/2)
+		half, _, k := d.descend(p, side.step, side.stop, height/2, height/2)
 		if half == 0 {
 			half = math.Abs(d.t[k] - d.t[p.apex])
 		}

@@ -22,7 +22,7 @@ type top struct {
 	leftEnd, rightEnd end
 	leftValley        bool // shares the valley with the top before
 	joined            bool // shares the valley with the next top
-	line              line // baseline in the smoothed trace, for the walk only
+	line              ramp // baseline in the smoothed trace, for the walk only
 	base              baseline
 	rise              float64 // of the smoothed apex above the line joining the limits
 	weak              bool
@@ -43,6 +43,18 @@ func (l line) at(t float64) float64 {
 	}
 	return l.y0 + float64((l.y1-l.y0)*((t-l.t0)/(l.t1-l.t0)))
 }
+
+// A ramp is a line as the walk needs it: cheap to follow, and exact at its beginning only.
+type ramp struct{ t0, y0, slope float64 }
+
+func (l line) ramp() ramp {
+	if l.t1 == l.t0 {
+		return ramp{l.t0, l.y0, 0}
+	}
+	return ramp{l.t0, l.y0, (l.y1 - l.y0) / (l.t1 - l.t0)}
+}
+
+func (r ramp) at(t float64) float64 { return r.y0 + float64(r.slope*(t-r.t0)) }
 
 // findTops appends to tops the maxima of s that rise by at least delta above the lowest point since the one before, and
 // fall by at least delta after. A trace that only falls from its start or rises to its end has none there.

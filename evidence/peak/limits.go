@@ -6,6 +6,7 @@ const (
 	walkRounds   = 4
 	reliable     = 4.0  // a level is looked for down to this many standard deviations of smoothed noise
 	edgeOfNoise  = 0.1  // of the noise: a flank is not followed further down than this
+	maxRead      = 6    // halvings of the height that are read from the trace
 	halvingWidth = 0.45 // of the half width: one more halving, where no second level can be read
 	cutFraction  = 0.01 // of the height: a flank that ends above this is cut
 	minAnchor    = 3    // points behind each end of a baseline, if the trace has them
@@ -53,7 +54,7 @@ func (d *detector) firstLine(tops []top, i int) {
 	_, last := d.bounds(tops, i, +1)
 	l := d.foot(tops[i].apex, -1, first)
 	r := d.foot(tops[i].apex, +1, last)
-	tops[i].line = line{d.t[l], d.s[l], d.t[r], d.s[r]}
+	tops[i].line = line{d.t[l], d.s[l], d.t[r], d.s[r]}.ramp()
 }
 
 func (d *detector) foot(apex, step, last int) int {
@@ -84,9 +85,10 @@ func (d *detector) foot(apex, step, last int) int {
 	}
 }
 
-// walk sets the limit of top i on one side. It goes down from the apex to half height and on to the lowest level, a half
-// to a power, that the noise leaves readable, and from there as far as a flank falling at the same rate would need to
-// come down to the edge fraction (or to a tenth of the noise).
+// walk sets the limit of top i on one side. It goes down from the apex to the lowest level, a half to a power up to the sixth,
+// that the noise leaves readable. From there it goes as far as a flank that keeps falling as over the last two halvings would
+// need to come down to the edge fraction, or to a tenth of the noise. A lower level is not read: the baseline is not known
+// so well yet, and the trace always meets a line drawn from its own foot.
 func (d *detector) walk(tops []top, i, step int) {
 	p := &tops[i]
 	valley, last := d.bounds(tops, i, step)
@@ -95,15 +97,16 @@ func (d *detector) walk(tops []top, i, step int) {
 		stop = valley
 	}
 	height := d.s[p.apex] - p.line.at(d.t[p.apex])
-	depth, level := d.levels(height)
-	halfWidth, width, k := d.descend(p, step, stop, height, math.Ldexp(height, -level))
+	depth, level, counts := d.levels(height)
+	over := min(level-1, 2) // halvings
+	upper, width, k := d.descend(p, step, stop, float64(counts*float64(int(1)<<over)), counts)
 	if width == 0 {
 		p.setLimit(step, stop, end{trace: valley < 0, cut: valley < 0})
 		return
 	}
-	rate := float64(halvingWidth * halfWidth)
-	if level > 1 {
-		rate = (width - halfWidth) / float64(level-1)
+	rate := float64(halvingWidth * width)
+	if over > 0 {
+		rate = (width - upper) / float64(over)
 	}
 	reach := width + float64(rate*max(depth-float64(level), 0))
 	for k != last && math.Abs(d.t[k]-d.t[p.apex]) < reach {
@@ -117,37 +120,39 @@ func (d *detector) walk(tops []top, i, step int) {
 	p.setLimit(step, k, e)
 }
 
-// levels returns how many halvings of the height there are to the edge of a peak, and how many of them can be read.
-func (d *detector) levels(height float64) (depth float64, readable int) {
+// levels returns how many halvings of the height there are to the edge of a peak, how many of them are read, and the counts
+// above the baseline after those.
+func (d *detector) levels(height float64) (depth float64, read int, counts float64) {
 	if !(height > 0) {
-		return 1, 1
+		return 1, 1, height / 2
 	}
 	f := max(d.p.edge(), float64(edgeOfNoise*d.noise/height))
 	depth = halvings(min(f, 0.5))
-	readable = 1
-	for float64(readable+1) <= depth && math.Ldexp(height, -readable-1) >= float64(reliable*d.smoothNoise) {
-		readable++
+	read, counts = 1, height/2
+	for read < maxRead && float64(read+1) <= depth && counts/2 >= float64(reliable*d.smoothNoise) {
+		read++
+		counts /= 2
 	}
-	return depth, readable
+	return depth, read, counts
 }
 
-// descend returns the distances in time from the apex at which the smoothed trace falls to half of height and to level
-// above the line, and the first point below level; 0 where the trace does not come down so far before stop.
-func (d *detector) descend(p *top, step, stop int, height, level float64) (halfWidth, width float64, k int) {
+// descend returns the distances in time from the apex at which the smoothed trace falls to two heights above the line, and the
+// first point below the lower; 0 where the trace does not come down so far before stop.
+func (d *detector) descend(p *top, step, stop int, upper, lower float64) (first, second float64, k int) {
 	apex := p.apex
-	before := height
+	before := d.s[apex] - p.line.at(d.t[apex])
 	for k = apex; k != stop; {
 		k += step
 		v := d.s[k] - p.line.at(d.t[k])
-		if halfWidth == 0 && v < height/2 {
-			halfWidth = d.crossing(apex, k, step, before, v, height/2)
+		if first == 0 && v < upper {
+			first = d.crossing(apex, k, step, before, v, upper)
 		}
-		if v < level || v <= 0 {
-			return halfWidth, d.crossing(apex, k, step, before, v, level), k
+		if v < lower || v <= 0 {
+			return first, d.crossing(apex, k, step, before, v, lower), k
 		}
 		before = v
 	}
-	return halfWidth, 0, k
+	return first, 0, k
 }
 
 // crossing is the distance in time from the apex to where the straight piece ending at point k, from value a to b, passes
@@ -194,7 +199,7 @@ func (d *detector) clusterLines(tops []top) {
 	for i := 0; i < len(tops); {
 		last := clusterEnd(tops, i)
 		a, b := d.anchors(tops, i, last)
-		l := line{mean(d.t, a), mean(d.s, a), mean(d.t, b), mean(d.s, b)}
+		l := newBaseline(d.t, d.s, a, b).ramp()
 		for ; i <= last; i++ {
 			tops[i].line = l
 		}

@@ -7,7 +7,7 @@ import (
 
 const (
 	maxSmoothingPoints  = 101
-	defaultEdgeFraction = 0x1p-11
+	defaultEdgeFraction = 0x1p-13
 )
 
 // Validate returns a *ParameterError for the first parameter out of its range: SmoothingPoints odd, 5 to 101; MinSN above

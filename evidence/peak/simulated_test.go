@@ -3,6 +3,7 @@ package peak
 import (
 	"math"
 	"math/rand/v2"
+	"testing"
 
 	"assaywrit/evidence/trace"
 )
@@ -68,3 +69,39 @@ func made(points int, step, offset, slope, sd float64, rng *rand.Rand, peaks ...
 }
 
 func seeded(n uint64) *rand.Rand { return rand.New(rand.NewPCG(n, 7)) }
+
+func traceOf(id string, times, values []float64) trace.Chromatogram {
+	return trace.Chromatogram{ID: id, TimeMin: times, Intensity: values}
+}
+
+// only returns the one peak of c.
+func only(t *testing.T, c trace.Chromatogram, p Parameters) Peak {
+	t.Helper()
+	r, err := Detect(c, p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(r.Peaks) != 1 {
+		t.Fatalf("%s: %d peaks, want 1: %+v", c.ID, len(r.Peaks), r.Peaks)
+	}
+	return r.Peaks[0]
+}
+
+// nearest returns the peak of c with its apex nearest to a time.
+func nearest(t *testing.T, c trace.Chromatogram, p Parameters, at float64) Peak {
+	t.Helper()
+	r, err := Detect(c, p)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(r.Peaks) == 0 {
+		t.Fatalf("%s: no peaks", c.ID)
+	}
+	best := r.Peaks[0]
+	for _, k := range r.Peaks {
+		if math.Abs(k.ApexMin-at) < math.Abs(best.ApexMin-at) {
+			best = k
+		}
+	}
+	return best
+}

@@ -15,7 +15,7 @@ type Parameters struct {
 	// this fraction of the smaller peak's height, the two are separate peaks with baselines of their own. 0 keeps all in common.
 	ValleyFraction float64 `json:"valley_fraction"`
 
-	// EdgeFraction is the fraction of its height to which a flank is followed; see Detect. 0 stands for 2^-11 (0.05 %).
+	// EdgeFraction is the fraction of its height to which a flank is followed; see Detect. 0 stands for 2^-13 (0.012 %).
 	EdgeFraction float64 `json:"edge_fraction,omitempty"`
 }
 
