@@ -8,7 +8,7 @@ import (
 )
 
 // abundanceAlgorithm names the estimate of an abundance's standard uncertainty; see abundanceStdU.
-const abundanceAlgorithm = "baseline-noise-ratio@1"
+const abundanceAlgorithm = "noise-ratio@1"
 
 // identificationsOf describes an analyte in every injection whose identity matters: samples, controls, calibrators, the
 // injections that should be without it, and blanks in which a peak was found.
@@ -73,19 +73,10 @@ func ionMatch(inj *Injection, compound, name string, quant, base *peak.Peak, ref
 	return ion
 }
 
-// abundanceStdU is the standard uncertainty of p's area over that of base, from baseline noise on both.
-//
-// With noise σ on each of n points a spacing h apart, the summed points contribute h·σ·√n to the area, and the straight
-// baseline between two noisy ends contributes (n·h)·σ/√2 (closed form for a trapezoid over evenly spaced points).
-// Counting noise of the signal itself is not in it: it is a lower bound.
+// abundanceStdU is the standard uncertainty of p's area over that of base, from the noise on both (peak.Peak.AreaStdU), by
+// the law of propagation for a quotient (JCGM 100:2008, 5.1.6). Counting noise of the signal itself is not in it: it is a
+// lower bound.
 func abundanceStdU(p, base *peak.Peak) float64 {
-	r := p.Area / base.Area
-	up, ub := areaNoise(p)/p.Area, areaNoise(base)/base.Area
-	return r * math.Sqrt(float64(up*up)+float64(ub*ub))
-}
-
-func areaNoise(p *peak.Peak) float64 {
-	n := float64(p.Points)
-	h := (p.EndMin - p.StartMin) / (n - 1)
-	return p.Noise * h * math.Sqrt(n+float64(n*n)/2)
+	up, ub := p.AreaStdU/p.Area, base.AreaStdU/base.Area
+	return p.Area / base.Area * math.Sqrt(float64(up*up)+float64(ub*ub))
 }
