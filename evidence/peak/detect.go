@@ -41,6 +41,11 @@ const minRise = 5.0
 // deviations, and its width at half height, smoothed, is at least MinWidthMin. A figure that cannot be had is absent:
 // widths that a valley hides, and symmetry below a signal-to-noise of 20, where 5 % of the height is lost in noise.
 //
+// Left out: a peak whose apex the trace does not hold (it only falls from the start, or rises to the end); a fused peak
+// without a maximum of its own, which stays in its neighbour and is flagged as a shoulder where the noise allows; and any
+// judgement whether two tops that the noise does not tell apart are two. Noise that a filter has made strongly smooth is
+// estimated low, and gives more false peaks than white noise.
+//
 // A trace of one constant value has no peaks and no noise. The error is a *ParameterError or a *TraceError.
 func Detect(c trace.Chromatogram, p Parameters) (*Result, error) {
 	if err := p.Validate(); err != nil {
@@ -144,7 +149,7 @@ func (d *detector) run() *Result {
 	}
 	for i := range tops {
 		p := &tops[i]
-		f := facts{p.leftEnd.cut, p.rightEnd.cut, d.method == NoiseFloor}
+		f := facts{p.leftEnd.cut, p.rightEnd.cut, d.hasShoulder(p), d.method == NoiseFloor}
 		measure(d.t, d.y, p.left, p.right, p.base, d.noise, f, &r.Peaks[i])
 	}
 	setResolution(r.Peaks)

@@ -64,6 +64,9 @@ func check(c trace.Chromatogram) error {
 	}
 	// A step too small to divide by, beside the length of the trace, is as good as none.
 	least := (c.TimeMin[n-1] - c.TimeMin[0]) * 0x1p-40
+	if !(least > 0 && least < maxMinutes) {
+		least = 0
+	}
 	for i, t := range c.TimeMin {
 		if !(math.Abs(t) <= maxMinutes) {
 			return fail(i, fmt.Sprintf("time %v min", t), "a finite time, at most 1e9 min from zero")
@@ -71,8 +74,8 @@ func check(c trace.Chromatogram) error {
 		if !(math.Abs(c.Intensity[i]) <= maxCounts) {
 			return fail(i, fmt.Sprintf("intensity %v", c.Intensity[i]), "a finite intensity, at most 1e60 counts from zero")
 		}
-		if i > 0 && !(t-c.TimeMin[i-1] > max(least, 0)) {
-			return fail(i, fmt.Sprintf("time %v min", t), fmt.Sprintf("a time after %v min", c.TimeMin[i-1]))
+		if i > 0 && !(t-c.TimeMin[i-1] > least) {
+			return fail(i, fmt.Sprintf("time %v min", t), fmt.Sprintf("a time more than %v min after %v min", least, c.TimeMin[i-1]))
 		}
 	}
 	return nil

@@ -73,15 +73,15 @@ func areaStdU(t []float64, left, right int, b baseline, noise float64) float64 {
 	length := t[right] - t[left]
 	later := 0.0 // share of the baseline's mean height that comes from its later end
 	if b.line.t1 > b.line.t0 {
-		later = ((t[left]+t[right])/2 - b.line.t0) / (b.line.t1 - b.line.t0)
+		later = (float64((t[left]+t[right])/2) - b.line.t0) / (b.line.t1 - b.line.t0)
 	}
 	weight := func(i int) float64 {
 		var w float64
 		if i > left && i <= right {
-			w += (t[i] - t[i-1]) / 2
+			w += float64((t[i] - t[i-1]) / 2)
 		}
 		if i >= left && i < right {
-			w += (t[i+1] - t[i]) / 2
+			w += float64((t[i+1] - t[i]) / 2)
 		}
 		if i >= b.from.from && i <= b.from.to {
 			w -= length * (1 - later) / float64(b.from.len())

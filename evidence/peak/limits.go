@@ -76,7 +76,7 @@ func (d *detector) foot(apex, step, last int) int {
 		}
 		// The last point above half height counts: a dip near a broad top does not end the peak.
 		width := reach
-		for width > 0 && d.s[apex+step*width] < d.s[apex]-fall/2 {
+		for width > 0 && d.s[apex+step*width] < d.s[apex]-float64(fall/2) {
 			width--
 		}
 		if 4*(width+1) <= reach {

@@ -3,7 +3,7 @@ package peak
 const symmetryMinSN = 20.0
 
 // facts are what is known of a peak before it is measured.
-type facts struct{ cutAtStart, cutAtEnd, noiseFloor bool }
+type facts struct{ cutAtStart, cutAtEnd, shoulder, noiseFloor bool }
 
 // measure fills in k, the peak with its limits at left and right, above the baseline b.
 func measure(t, y []float64, left, right int, b baseline, noise float64, f facts, k *Peak) {

@@ -19,7 +19,7 @@ func (s *shape) height(i int) float64 { return s.y[i] - s.base.at(s.t[i]) }
 // highest point's own time where that point is no higher than a neighbour, and the middle of a flat top.
 func (s *shape) apex() float64 {
 	if from, to := s.flat(); to-from+1 >= plateau {
-		return s.t[from] + (s.t[to]-s.t[from])/2
+		return s.t[from] + float64((s.t[to]-s.t[from])/2)
 	}
 	i := s.top
 	h := s.height(i)
@@ -105,6 +105,7 @@ func (s *shape) flags(k *Peak, f facts) []string {
 	add(f.cutAtEnd, FlagCutAtEnd)
 	add(above == 1, FlagSpike)
 	add(above < fewPoints, FlagFewPoints)
+	add(f.shoulder, FlagShoulder)
 	add(k.BaselineStartCounts < limit || k.BaselineEndCounts < limit, FlagNegativeBaseline)
 	add(k.Area <= 0, FlagNegativeArea)
 	add(s.top == s.left+1 && s.height(s.left) >= s.height(s.top) ||

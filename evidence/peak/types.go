@@ -89,6 +89,7 @@ const (
 	FlagCutAtEnd         = "cut-at-end"        // the trace ends before the peak does
 	FlagSpike            = "spike"             // one single point stands above half height
 	FlagFewPoints        = "few-points"        // fewer than five points stand above half height
+	FlagShoulder         = "shoulder"          // a flank flattens and steepens again: perhaps two peaks in one; from Detect only
 	FlagNegativeBaseline = "negative-baseline" // the baseline lies more than three noises below zero counts
 	FlagNegativeArea     = "negative-area"     // the area is not above zero
 	FlagApexAtLimit      = "apex-at-limit"     // the highest point is next to a limit: no apex inside
