@@ -17,23 +17,25 @@ const minRise = 5.0
 // which that distance is noisier than a point, is free of drift; distances beyond three times their scaled median
 // absolute value are left out, and the root mean square of the rest is corrected for that. Where at least three blocks
 // of 24 quiet points can be made (or else of 12), the median of the variances about their own straight lines is a second
-// estimate, and the larger of the two counts: a filter that smooths the noise does not make peaks more significant. The
-// smoothed trace's own noise is had from such blocks too. As peaks and
-// noise depend on each other, both are found again until the noise settles (at most four times). With fewer than ten
-// quiet points the whole trace is used (noise-whole-trace@1). A trace without measurable noise gets 2^-30 of its range
-// (noise-floor@1), and its peaks carry a flag.
+// estimate, and the larger of the two counts: noise that a filter has smoothed hides in the differences. The smoothed
+// trace's own noise is had from such blocks too. As peaks and noise depend on each other, both are found again until the
+// noise settles (at most four times). With fewer than ten quiet points the whole trace is used (noise-whole-trace@1). A
+// trace without measurable noise gets 2^-30 of its range (noise-floor@1), and its peaks carry a flag.
 //
 // Detection uses a Savitzky–Golay smoothed trace, less the median drift. A top must rise from the lowest point before and
 // fall to the lowest after by at least four standard deviations of smoothed noise. From each apex the walk goes down
 // both flanks to the lowest readable level (half the height, a quarter, … down to 1/64) and on, at the rate of fall last
 // seen, until the flank would have come down to EdgeFraction of the height or to a tenth of the noise, whichever is
-// higher: a tail is not cut where it sinks into the noise. Limits are acquired points. Neighbours whose limits overlap share the lowest point between them.
+// higher: a tail is not cut where it sinks into the noise. Limits are acquired points. Neighbours whose limits overlap, or
+// leave fewer points between them than the wider one has above half height, share the lowest smoothed point between them.
+// A valley that only nicks a taller flank or top must be six standard deviations deep, of the noise there.
 //
 // The baseline is straight. It passes through the mean of the acquired points from the limit outwards, as many as the
 // peak has above half height; peaks that share valleys have one baseline from the first limit to the last, and are
 // divided by perpendiculars (Shared = Drop), or have lines of their own joining the signal at the valleys (Valley). A valley
 // lower than ValleyFraction of the smaller peak's height above the common baseline separates: both sides then get
-// baselines of their own, which pass through the mean of the points around the valley that lie as low.
+// baselines of their own, which pass through the mean of the points around the valley that stand no higher than half of
+// that.
 //
 // Everything else comes from the points as acquired: the area as in Integrate, the height as the highest point above the
 // baseline, signal-to-noise as height over noise. A peak is reported if its highest point stands at least MinSN noises
@@ -70,14 +72,11 @@ const (
 
 // A detector is one run of Detect.
 type detector struct {
-	id    string
 	p     Parameters
 	t, y  []float64
 	s     []float64 // smoothed, less the drift
 	drift float64   // counts a minute
 	w     *workspace
-
-	before top // the top that dropWeak looked at last
 
 	floor       float64 // least noise
 	noise       float64
@@ -96,7 +95,7 @@ func newDetector(c trace.Chromatogram, p Parameters, w *workspace) *detector {
 	w.residual = resize(w.residual, n)
 	w.scratch = resize(w.scratch, n)
 	w.quiet = resize(w.quiet, n)
-	d := &detector{id: c.ID, p: p, t: c.TimeMin, y: c.Intensity, s: w.smooth, w: w}
+	d := &detector{p: p, t: c.TimeMin, y: c.Intensity, s: w.smooth, w: w}
 	lo, hi := d.y[0], d.y[0]
 	for _, v := range d.y {
 		lo, hi = min(lo, v), max(hi, v)
@@ -199,16 +198,16 @@ func (d *detector) dropWeak(tops []top) []top {
 		tops[i].weak = !d.isPeak(&tops[i])
 	}
 	out := tops[:0]
+	var before top // as it was: its place may hold another by now
 	for i := range tops {
 		p := tops[i]
-		// The top before may have been overwritten by now, but not by one that differs in what is asked here.
-		if !p.weak || (p.leftValley && d.before.weak && d.before.rise < p.rise) ||
-			(p.joined && tops[i+1].weak && tops[i+1].rise <= p.rise) {
-			d.before = p
+		keep := !p.weak || (p.leftValley && before.weak && before.rise < p.rise) ||
+			(p.joined && tops[i+1].weak && tops[i+1].rise <= p.rise)
+		before = p
+		if keep {
 			out = append(out, p)
 			continue
 		}
-		d.before = p
 		if len(out) > 0 {
 			// The valley that stays is the lower of the two.
 			if last := &out[len(out)-1]; i+1 == len(tops) || d.s[p.valley] < d.s[last.valley] {

@@ -91,6 +91,7 @@ func areaStdU(t []float64, left, right int, b baseline, noise float64) float64 {
 		}
 		return w
 	}
+	// The first span begins before the peak and the second ends behind it; what of them lies inside is counted there.
 	var sum float64
 	add := func(from, to int) {
 		for i := from; i <= to; i++ {
@@ -101,7 +102,6 @@ func areaStdU(t []float64, left, right int, b baseline, noise float64) float64 {
 	add(b.from.from, min(b.from.to, left-1))
 	add(left, right)
 	add(max(b.to.from, right+1), b.to.to)
-	// Spans of a cluster's baseline lie beyond the peak on the other side, or have been counted.
 	return math.Sqrt(sum) * noise
 }
 

@@ -7,7 +7,6 @@ type workspace struct {
 	smooth, residual, scratch []float64
 	quiet                     []bool
 	tops                      []top
-	spare                     []top
 }
 
 var workspaces = sync.Pool{New: func() any { return new(workspace) }}
