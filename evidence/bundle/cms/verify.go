@@ -22,6 +22,10 @@ type Verified struct {
 
 // Verify checks a detached signature over content: form, attributes, digest and signature value, and that the
 // certificates are those that were signed for. The error is a *RefusedError.
+//
+// No byte of a signature that Sign made can change without being refused. Another program may name the signer's certificate
+// alone in signing-certificate-v2 and still enclose its issuers': those are vouched for by their own issuers, so that
+// whoever builds the path to a root must see that each of Intermediates is on it.
 func Verify(der, content []byte) (*Verified, error) {
 	if len(der) > MaxSize {
 		return nil, refused(fmt.Sprintf("has %d bytes, want %d at most", len(der), MaxSize))
