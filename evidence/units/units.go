@@ -194,3 +194,9 @@ func (f Family) In(value float64, symbol string) (float64, error) {
 	}
 	return 0, fmt.Errorf("got unit %q, want %s", symbol, f.Want())
 }
+
+// Base is the symbol of the base unit.
+func (f Family) Base() string { return f.base }
+
+// Bare tells whether a number without a unit is accepted.
+func (f Family) Bare() bool { return f.bare }
