@@ -16,221 +16,221 @@ type Folder struct {
 
 // A Case is case.yaml, format assaywrit-case/1.
 type Case struct {
-	Format        string `json:"format"`
-	Number        string `json:"case"`
-	Demonstration bool   `json:"demonstration,omitempty"`
+	Format        string `json:"format" key:"format" enum:"assaywrit-case/1" doc:"Format of this file and its version."`
+	Number        string `json:"case" key:"case" doc:"Number of the case; it appears on every page." pattern:"^[A-Za-z0-9][A-Za-z0-9._/-]*$"`
+	Demonstration bool   `json:"demonstration,omitempty" key:"demonstration,optional" doc:"true marks every page DEMONSTRATION, NOT VALID."`
 
-	Laboratory Laboratory `json:"laboratory"`
-	Customer   Customer   `json:"customer"`
-	Sample     Sample     `json:"sample"`
-	Request    Request    `json:"request"`
+	Laboratory Laboratory `json:"laboratory" key:"laboratory" doc:"The laboratory that issues the package."`
+	Customer   Customer   `json:"customer" key:"customer" doc:"The authority that asked for the analysis."`
+	Sample     Sample     `json:"sample" key:"sample" doc:"The sample, by code numbers only."`
+	Request    Request    `json:"request" key:"request" doc:"What was asked."`
 
-	MethodFile   string `json:"method"`   // path inside the folder, forward slashes
-	SequenceFile string `json:"sequence"` // path inside the folder
-	Criteria     string `json:"criteria"` // name of a built-in set, or path of a file inside the folder
+	MethodFile   string `json:"method" key:"method" format:"path" doc:"The method, a file in this folder."`                           // path inside the folder, forward slashes
+	SequenceFile string `json:"sequence" key:"sequence" format:"path" doc:"The injection list, a file in this folder."`               // path inside the folder
+	Criteria     string `json:"criteria" key:"criteria" doc:"Name of a built-in criteria set, or the path of a file in this folder."` // name of a built-in set, or path of a file inside the folder
 
-	People      []Person            `json:"people"`
-	Signatories []Signatory         `json:"signatories"`
-	Custody     []CustodyEvent      `json:"custody"`
-	InitialTest *InitialTest        `json:"initial_test,omitempty"`
-	Materials   []Material          `json:"materials,omitempty"`
-	Deviations  []Deviation         `json:"deviations"`
-	Manual      []ManualIntegration `json:"manual_integrations,omitempty"`
-	Documents   []Document          `json:"documents,omitempty"`
-	Supersedes  *Supersedes         `json:"supersedes,omitempty"`
+	People      []Person            `json:"people" key:"people" minitems:"1" doc:"Everyone who acted in the case, by code."`
+	Signatories []Signatory         `json:"signatories" key:"signatories" minitems:"1" doc:"Who is to sign, and what each signature means."`
+	Custody     []CustodyEvent      `json:"custody" key:"custody" minitems:"1" doc:"Chain of custody, in order of time."`
+	InitialTest *InitialTest        `json:"initial_test,omitempty" key:"initial_test,optional" doc:"The initial (screening) test, if one was made."`
+	Materials   []Material          `json:"materials,omitempty" key:"materials,optional" doc:"Reference materials and reagents used."`
+	Deviations  []Deviation         `json:"deviations" key:"deviations" doc:"Deviations from the method; [] where there were none."`
+	Manual      []ManualIntegration `json:"manual_integrations,omitempty" key:"manual_integrations,optional" doc:"Integrations set by hand."`
+	Documents   []Document          `json:"documents,omitempty" key:"documents,optional" doc:"Files in documents/ that belong to the package."`
+	Supersedes  *Supersedes         `json:"supersedes,omitempty" key:"supersedes,optional" doc:"The bundle that this one replaces."`
 }
 
 type Laboratory struct {
-	Code    string `json:"code"`
-	Name    string `json:"name"`
-	Address string `json:"address"`
-	Site    string `json:"site,omitempty"` // where the work was done, if elsewhere
+	Code    string `json:"code" key:"code" doc:"Laboratory code."`
+	Name    string `json:"name" key:"name"`
+	Address string `json:"address" key:"address"`
+	Site    string `json:"site,omitempty" key:"site,optional" doc:"Where the work was done, if elsewhere."` // where the work was done, if elsewhere
 }
 
 type Customer struct {
-	Name      string `json:"name"`
-	Contact   string `json:"contact"`
-	Reference string `json:"reference,omitempty"`
+	Name      string `json:"name" key:"name"`
+	Contact   string `json:"contact" key:"contact"`
+	Reference string `json:"reference,omitempty" key:"reference,optional" doc:"The authority's own reference."`
 }
 
 // A Sample is known by code numbers only.
 type Sample struct {
-	Code            string   `json:"code"`
-	LaboratoryCode  string   `json:"laboratory_code"`
-	Container       string   `json:"container"` // such as "A bottle"
-	Matrix          string   `json:"matrix"`
-	CollectedAt     string   `json:"collected"` // RFC 3339
-	ReceivedAt      string   `json:"received"`  // RFC 3339
-	Condition       string   `json:"condition"`
-	Irregularities  []string `json:"irregularities,omitempty"`
-	VolumeML        *float64 `json:"volume_ml,omitempty"`
-	PH              *float64 `json:"ph,omitempty"`
-	SpecificGravity *float64 `json:"specific_gravity,omitempty"`
-	Appearance      string   `json:"appearance,omitempty"`
-	Storage         string   `json:"storage,omitempty"`
+	Code            string   `json:"code" key:"code" doc:"Sample code, never a name."`
+	LaboratoryCode  string   `json:"laboratory_code" key:"laboratory_code" doc:"Code that the laboratory gave it."`
+	Container       string   `json:"container" key:"container" doc:"Such as A bottle."` // such as "A bottle"
+	Matrix          string   `json:"matrix" key:"matrix" doc:"Such as urine."`
+	CollectedAt     string   `json:"collected" key:"collected" format:"rfc3339"` // RFC 3339
+	ReceivedAt      string   `json:"received" key:"received" format:"rfc3339"`   // RFC 3339
+	Condition       string   `json:"condition" key:"condition" doc:"Condition at receipt."`
+	Irregularities  []string `json:"irregularities,omitempty" key:"irregularities,optional"`
+	VolumeML        *float64 `json:"volume_ml,omitempty" key:"volume,optional" unit:"mL" above:"0"`
+	PH              *float64 `json:"ph,omitempty" key:"ph,optional" min:"0" max:"14"`
+	SpecificGravity *float64 `json:"specific_gravity,omitempty" key:"specific_gravity,optional" min:"1" max:"1.1" doc:"At 20 °C relative to water."`
+	Appearance      string   `json:"appearance,omitempty" key:"appearance,optional"`
+	Storage         string   `json:"storage,omitempty" key:"storage,optional" doc:"Where and how it is kept."`
 }
 
 type Request struct {
-	Text     string   `json:"text"`
-	TestType string   `json:"test_type,omitempty"`
-	Activity string   `json:"activity,omitempty"` // sport and discipline, or workplace
-	Analytes []string `json:"analytes"`           // ids of the method's analytes to be reported
+	Text     string   `json:"text" key:"text" doc:"The request in a sentence."`
+	TestType string   `json:"test_type,omitempty" key:"test_type,optional" doc:"Such as in-competition."`
+	Activity string   `json:"activity,omitempty" key:"activity,optional" doc:"Sport and discipline, or workplace."`    // sport and discipline, or workplace
+	Analytes []string `json:"analytes" key:"analytes" minitems:"1" doc:"Ids of the method's analytes to be reported."` // ids of the method's analytes to be reported
 }
 
 type Person struct {
-	Code     string `json:"code"` // such as "P-03": no names are needed
-	Name     string `json:"name,omitempty"`
-	Position string `json:"position"`
+	Code     string `json:"code" key:"code" doc:"Such as P-03; no names are needed."` // such as "P-03": no names are needed
+	Name     string `json:"name,omitempty" key:"name,optional"`
+	Position string `json:"position" key:"position"`
 }
 
 // A Signatory is a person who is to sign, and what the signature means.
 type Signatory struct {
-	Person  string `json:"person"`
-	Meaning string `json:"meaning"` // "analysed", "reviewed", "authorised"
+	Person  string `json:"person" key:"person" doc:"Code of a person."`
+	Meaning string `json:"meaning" key:"meaning" enum:"analysed|reviewed|authorised"` // "analysed", "reviewed", "authorised"
 }
 
 type CustodyEvent struct {
-	At       string `json:"at"` // RFC 3339
-	Item     string `json:"item"`
-	Event    string `json:"event"`
-	From     string `json:"from,omitempty"`
-	To       string `json:"to,omitempty"`
-	Location string `json:"location,omitempty"`
-	Seal     string `json:"seal,omitempty"`
-	Note     string `json:"note,omitempty"`
+	At       string `json:"at" key:"at" format:"rfc3339"` // RFC 3339
+	Item     string `json:"item" key:"item" doc:"What was handed over or worked on, such as A bottle or aliquot A1."`
+	Event    string `json:"event" key:"event" doc:"What happened."`
+	From     string `json:"from,omitempty" key:"from,optional" doc:"Code of the person who gave it."`
+	To       string `json:"to,omitempty" key:"to,optional" doc:"Code of the person who has it now."`
+	Location string `json:"location,omitempty" key:"location,optional"`
+	Seal     string `json:"seal,omitempty" key:"seal,optional" doc:"Number and state of the seal."`
+	Note     string `json:"note,omitempty" key:"note,optional"`
 }
 
 type InitialTest struct {
-	At      string `json:"at"`
-	Method  string `json:"method"`
-	Aliquot string `json:"aliquot"`
-	By      string `json:"by"`
-	Result  string `json:"result"`
+	At      string `json:"at" key:"at" format:"rfc3339"`
+	Method  string `json:"method" key:"method"`
+	Aliquot string `json:"aliquot" key:"aliquot"`
+	By      string `json:"by" key:"by" doc:"Code of a person."`
+	Result  string `json:"result" key:"result"`
 }
 
 type Material struct {
-	Name        string `json:"name"`
-	Lot         string `json:"lot"`
-	Expires     string `json:"expires"` // YYYY-MM-DD
-	Certificate string `json:"certificate,omitempty"`
+	Name        string `json:"name" key:"name"`
+	Lot         string `json:"lot" key:"lot"`
+	Expires     string `json:"expires" key:"expires" format:"date"` // YYYY-MM-DD
+	Certificate string `json:"certificate,omitempty" key:"certificate,optional"`
 }
 
 type Deviation struct {
-	At         string `json:"at,omitempty"`
-	Text       string `json:"text"`
-	ApprovedBy string `json:"approved_by,omitempty"`
+	At         string `json:"at,omitempty" key:"at,optional" format:"rfc3339"`
+	Text       string `json:"text" key:"text"`
+	ApprovedBy string `json:"approved_by,omitempty" key:"approved_by,optional" doc:"Code of a person."`
 }
 
 // A ManualIntegration replaces the automatic limits of one peak; the automatic result is kept beside it.
 type ManualIntegration struct {
-	Injection  string  `json:"injection"`
-	Compound   string  `json:"compound"` // id of an analyte or internal standard
-	Trace      string  `json:"trace"`    // "quantifier", "qualifier-1", …, "internal-standard"
-	StartMin   float64 `json:"start_min"`
-	EndMin     float64 `json:"end_min"`
-	By         string  `json:"by"`
-	At         string  `json:"at"`
-	Reason     string  `json:"reason"`
-	ApprovedBy string  `json:"approved_by"`
+	Injection  string  `json:"injection" key:"injection" doc:"Id of the injection."`
+	Compound   string  `json:"compound" key:"compound" doc:"Id of an analyte or internal standard."`               // id of an analyte or internal standard
+	Trace      string  `json:"trace" key:"trace" pattern:"^(quantifier|qualifier-[1-9][0-9]*|internal-standard)$"` // "quantifier", "qualifier-1", …, "internal-standard"
+	StartMin   float64 `json:"start_min" key:"start" unit:"min" min:"0"`
+	EndMin     float64 `json:"end_min" key:"end" unit:"min" above:"0"`
+	By         string  `json:"by" key:"by" doc:"Code of the person who set the limits."`
+	At         string  `json:"at" key:"at" format:"rfc3339"`
+	Reason     string  `json:"reason" key:"reason"`
+	ApprovedBy string  `json:"approved_by" key:"approved_by" doc:"Code of another person, who approved it."`
 }
 
 type Document struct {
-	File  string `json:"file"`
-	Title string `json:"title"`
+	File  string `json:"file" key:"file" format:"path"`
+	Title string `json:"title" key:"title"`
 }
 
 type Supersedes struct {
-	Root   string `json:"root"` // Merkle root of the superseded bundle, hex
-	Reason string `json:"reason"`
+	Root   string `json:"root" key:"root" pattern:"^[0-9a-f]{64}$" doc:"Merkle root of the bundle that is replaced."` // Merkle root of the superseded bundle, hex
+	Reason string `json:"reason" key:"reason"`
 }
 
 // A Method is method.yaml, format assaywrit-method/1: the validated method.
 type Method struct {
-	Format        string     `json:"format"`
-	ID            string     `json:"id"`
-	Version       string     `json:"version"`
-	Title         string     `json:"title"`
-	EffectiveFrom string     `json:"effective_from,omitempty"` // YYYY-MM-DD
-	Technique     string     `json:"technique"`
-	Matrix        string     `json:"matrix"`
-	Summary       string     `json:"summary"`
-	Instrument    Instrument `json:"instrument"`
+	Format        string     `json:"format" key:"format" enum:"assaywrit-method/1" doc:"Format of this file and its version."`
+	ID            string     `json:"id" key:"id" doc:"Number of the procedure."`
+	Version       string     `json:"version" key:"version"`
+	Title         string     `json:"title" key:"title"`
+	EffectiveFrom string     `json:"effective_from,omitempty" key:"effective_from,optional" format:"date"` // YYYY-MM-DD
+	Technique     string     `json:"technique" key:"technique" doc:"Such as LC-MS/MS."`
+	Matrix        string     `json:"matrix" key:"matrix"`
+	Summary       string     `json:"summary" key:"summary" doc:"The procedure in a few sentences."`
+	Instrument    Instrument `json:"instrument" key:"instrument"`
 
-	Tables []TableLayout `json:"tables,omitempty"` // how delimited text files are laid out
+	Tables []TableLayout `json:"tables,omitempty" key:"tables,optional" doc:"How delimited text files are laid out."` // how delimited text files are laid out
 
-	Integration    peak.Parameters `json:"integration"`
-	Identification Identification  `json:"identification"`
-	Batch          BatchLimits     `json:"batch"`
+	Integration    peak.Parameters `json:"integration" key:"integration" doc:"How peaks are found and integrated."`
+	Identification Identification  `json:"identification" key:"identification" doc:"What serves as the reference."`
+	Batch          BatchLimits     `json:"batch" key:"batch" doc:"Limits for accepting the batch."`
 
-	InternalStandards []InternalStandard `json:"internal_standards"`
-	Analytes          []Analyte          `json:"analytes"`
+	InternalStandards []InternalStandard `json:"internal_standards" key:"internal_standards" minitems:"1"`
+	Analytes          []Analyte          `json:"analytes" key:"analytes" minitems:"1"`
 }
 
 type Instrument struct {
-	ID                string   `json:"id"`
-	Description       string   `json:"description,omitempty"`
-	Column            string   `json:"column,omitempty"`
-	ColumnLengthMM    *float64 `json:"column_length_mm,omitempty"`
-	MobilePhase       string   `json:"mobile_phase,omitempty"`
-	FlowMLPerMin      *float64 `json:"flow_ml_per_min,omitempty"`
-	InjectionVolumeUL *float64 `json:"injection_volume_ul,omitempty"`
-	VoidTimeMin       *float64 `json:"void_time_min,omitempty"`
-	Ionisation        string   `json:"ionisation,omitempty"`
+	ID                string   `json:"id" key:"id"`
+	Description       string   `json:"description,omitempty" key:"description,optional"`
+	Column            string   `json:"column,omitempty" key:"column,optional"`
+	ColumnLengthMM    *float64 `json:"column_length_mm,omitempty" key:"column_length,optional" unit:"mm" above:"0"`
+	MobilePhase       string   `json:"mobile_phase,omitempty" key:"mobile_phase,optional"`
+	FlowMLPerMin      *float64 `json:"flow_ml_per_min,omitempty" key:"flow,optional" unit:"mL/min" above:"0"`
+	InjectionVolumeUL *float64 `json:"injection_volume_ul,omitempty" key:"injection_volume,optional" unit:"uL" above:"0"`
+	VoidTimeMin       *float64 `json:"void_time_min,omitempty" key:"void_time,optional" unit:"min" above:"0"`
+	Ionisation        string   `json:"ionisation,omitempty" key:"ionisation,optional"`
 }
 
 // A TableLayout declares the columns of delimited text files whose path matches Files.
 type TableLayout struct {
-	Files       string        `json:"files"`     // path pattern, such as "raw/*.csv"
-	Separator   string        `json:"separator"` // "comma", "semicolon", "tab"
-	DecimalMark string        `json:"decimal_mark"`
-	HeaderLines int           `json:"header_lines"`
-	TimeColumn  int           `json:"time_column"` // from 1
-	TimeUnit    string        `json:"time_unit"`   // "min" or "s"
-	Columns     []TableColumn `json:"columns"`
+	Files       string        `json:"files" key:"files" doc:"Path pattern, such as raw/*.csv."` // path pattern, such as "raw/*.csv"
+	Separator   string        `json:"separator" key:"separator" enum:"comma|semicolon|tab"`     // "comma", "semicolon", "tab"
+	DecimalMark string        `json:"decimal_mark" key:"decimal_mark" enum:"point|comma"`
+	HeaderLines int           `json:"header_lines" key:"header_lines" min:"0"`
+	TimeColumn  int           `json:"time_column" key:"time_column" min:"1" doc:"Counted from 1."` // from 1
+	TimeUnit    string        `json:"time_unit" key:"time_unit" enum:"min|s"`                      // "min" or "s"
+	Columns     []TableColumn `json:"columns" key:"columns" minitems:"1"`
 }
 
 type TableColumn struct {
-	Column int    `json:"column"` // from 1
-	ID     string `json:"id"`
+	Column int    `json:"column" key:"column" min:"1" doc:"Counted from 1."` // from 1
+	ID     string `json:"id" key:"id" doc:"Name of the trace."`
 	trace.Transition
 }
 
 // Identification says which injections of the batch serve as the reference and how peaks are sought.
 type Identification struct {
-	ReferenceRoles  []Role  `json:"reference_roles"` // such as calibrator, control
-	CoelutionMin    float64 `json:"coelution_min"`   // a qualifier's apex lies within this of the quantifier's
-	TransitionTolMZ float64 `json:"transition_tolerance_mz"`
+	ReferenceRoles  []Role  `json:"reference_roles" key:"reference_roles" minitems:"1" enum:"calibrator|control" doc:"Roles of the injections that serve as the reference."` // such as calibrator, control
+	CoelutionMin    float64 `json:"coelution_min" key:"coelution" unit:"min" above:"0" max:"1" doc:"How far a qualifier's apex may lie from the quantifier's."`              // a qualifier's apex lies within this of the quantifier's
+	TransitionTolMZ float64 `json:"transition_tolerance_mz" key:"transition_tolerance" above:"0" max:"1" doc:"How far recorded m/z may lie from those of the method."`
 }
 
 // BatchLimits are the method's own limits for batch acceptance. Fractions are of 1.
 type BatchLimits struct {
-	BlankMaxOfLowest           float64 `json:"blank_max_of_lowest"`            // analyte area in a blank / mean area of the lowest calibrator
-	BlankMaxOfInternalStandard float64 `json:"blank_max_of_internal_standard"` // internal-standard area in a blank without it / mean area in the calibrators
-	CalibratorBias             float64 `json:"calibrator_bias"`                // |back-calculated/nominal − 1|
-	LowestCalibratorBias       float64 `json:"lowest_calibrator_bias"`
-	CalibratorShare            float64 `json:"calibrator_share"`  // share of calibrators that must pass
-	CalibratorLevels           int     `json:"calibrator_levels"` // levels that must remain
-	ControlBias                float64 `json:"control_bias"`
-	ControlShare               float64 `json:"control_share"`
-	ControlShareEachLevel      float64 `json:"control_share_each_level"`
-	InternalStandardLow        float64 `json:"internal_standard_low"` // response / mean of calibrators, lower limit
-	InternalStandardHigh       float64 `json:"internal_standard_high"`
-	AliquotSpread              float64 `json:"aliquot_spread"` // relative standard deviation of the aliquots, upper limit
-	Aliquots                   int     `json:"aliquots"`       // aliquots that a quantitative result needs
+	BlankMaxOfLowest           float64 `json:"blank_max_of_lowest" key:"blank_max_of_lowest" unit:"fraction" min:"0" max:"1" doc:"Analyte in a blank, of the lowest calibrator."`                                            // analyte area in a blank / mean area of the lowest calibrator
+	BlankMaxOfInternalStandard float64 `json:"blank_max_of_internal_standard" key:"blank_max_of_internal_standard" unit:"fraction" min:"0" max:"1" doc:"Internal standard in a blank without it, of the calibrators' mean."` // internal-standard area in a blank without it / mean area in the calibrators
+	CalibratorBias             float64 `json:"calibrator_bias" key:"calibrator_bias" unit:"fraction" min:"0" max:"1" doc:"Back-calculated from nominal."`                                                                    // |back-calculated/nominal − 1|
+	LowestCalibratorBias       float64 `json:"lowest_calibrator_bias" key:"lowest_calibrator_bias" unit:"fraction" min:"0" max:"1" doc:"The same for the lowest level."`
+	CalibratorShare            float64 `json:"calibrator_share" key:"calibrator_share" unit:"fraction" min:"0" max:"1" doc:"Share of calibrators that must pass."` // share of calibrators that must pass
+	CalibratorLevels           int     `json:"calibrator_levels" key:"calibrator_levels" min:"3" doc:"Levels that must remain."`                                   // levels that must remain
+	ControlBias                float64 `json:"control_bias" key:"control_bias" unit:"fraction" min:"0" max:"1" doc:"Found from nominal."`
+	ControlShare               float64 `json:"control_share" key:"control_share" unit:"fraction" min:"0" max:"1" doc:"Share of all controls that must pass."`
+	ControlShareEachLevel      float64 `json:"control_share_each_level" key:"control_share_each_level" unit:"fraction" min:"0" max:"1" doc:"Share at each level."`
+	InternalStandardLow        float64 `json:"internal_standard_low" key:"internal_standard_low" unit:"fraction" min:"0" max:"1" doc:"Response over the calibrators' mean, lower limit."` // response / mean of calibrators, lower limit
+	InternalStandardHigh       float64 `json:"internal_standard_high" key:"internal_standard_high" unit:"fraction" min:"1" max:"100" doc:"The same, upper limit."`
+	AliquotSpread              float64 `json:"aliquot_spread" key:"aliquot_spread" unit:"fraction" min:"0" max:"1" doc:"Relative standard deviation of the aliquots."` // relative standard deviation of the aliquots, upper limit
+	Aliquots                   int     `json:"aliquots" key:"aliquots" min:"1" doc:"Aliquots that a quantitative result needs."`                                       // aliquots that a quantitative result needs
 }
 
 type InternalStandard struct {
-	ID                   string     `json:"id"`
-	Name                 string     `json:"name"`
-	ExpectedRetentionMin float64    `json:"expected_retention_min"`
-	RetentionWindowMin   float64    `json:"retention_window_min"` // half width of the search window
-	Transition           Transition `json:"transition"`
+	ID                   string     `json:"id" key:"id" pattern:"^[a-z0-9][a-z0-9-]*$"`
+	Name                 string     `json:"name" key:"name"`
+	ExpectedRetentionMin float64    `json:"expected_retention_min" key:"expected_retention" unit:"min" above:"0"`
+	RetentionWindowMin   float64    `json:"retention_window_min" key:"retention_window" unit:"min" above:"0" doc:"Half width of the search window."` // half width of the search window
+	Transition           Transition `json:"transition" key:"transition"`
 }
 
 // A Transition is one monitored reaction, or, for a table, a named column.
 type Transition struct {
 	trace.Transition
-	TraceID string `json:"trace_id,omitempty"` // where the file names the trace instead of its ions
+	TraceID string `json:"trace_id,omitempty" key:"trace_id,optional" doc:"Where the file names the trace instead of its ions."` // where the file names the trace instead of its ions
 }
 
 // Kind of an analyte: what is asked of it.
@@ -242,37 +242,37 @@ const (
 )
 
 type Analyte struct {
-	ID                   string       `json:"id"`
-	Name                 string       `json:"name"`
-	Kind                 Kind         `json:"kind"`
-	InternalStandard     string       `json:"internal_standard"`
-	ExpectedRetentionMin float64      `json:"expected_retention_min"`
-	RetentionWindowMin   float64      `json:"retention_window_min"`
-	Quantifier           Transition   `json:"quantifier"`
-	Qualifiers           []Transition `json:"qualifiers"`
-	Unit                 string       `json:"unit"` // for people: "ng/mL", "ug/mL"
-	Calibration          *Calibration `json:"calibration,omitempty"`
-	Uncertainty          *Uncertainty `json:"uncertainty,omitempty"`
+	ID                   string       `json:"id" key:"id" pattern:"^[a-z0-9][a-z0-9-]*$"`
+	Name                 string       `json:"name" key:"name"`
+	Kind                 Kind         `json:"kind" key:"kind" enum:"threshold|presence"`
+	InternalStandard     string       `json:"internal_standard" key:"internal_standard" doc:"Id of an internal standard."`
+	ExpectedRetentionMin float64      `json:"expected_retention_min" key:"expected_retention" unit:"min" above:"0"`
+	RetentionWindowMin   float64      `json:"retention_window_min" key:"retention_window" unit:"min" above:"0" doc:"Half width of the search window."`
+	Quantifier           Transition   `json:"quantifier" key:"quantifier"`
+	Qualifiers           []Transition `json:"qualifiers" key:"qualifiers" minitems:"1"`
+	Unit                 string       `json:"unit" key:"unit" enum:"ng/mL|ug/mL|mg/mL|pg/mL|ug/L|mg/L" doc:"Unit that people read."` // for people: "ng/mL", "ug/mL"
+	Calibration          *Calibration `json:"calibration,omitempty" key:"calibration,optional" doc:"Needed for a threshold analyte."`
+	Uncertainty          *Uncertainty `json:"uncertainty,omitempty" key:"uncertainty,optional" doc:"Needed for a threshold analyte."`
 }
 
 type Calibration struct {
-	Model     string                `json:"model"` // "line"
-	Weighting calibration.Weighting `json:"weighting"`
+	Model     string                `json:"model" key:"model" enum:"line"` // "line"
+	Weighting calibration.Weighting `json:"weighting" key:"weighting" enum:"none|1/x|1/x2"`
 }
 
 // Uncertainty names how repeatability is taken and the components stated by the validation.
 type Uncertainty struct {
-	Repeatability string            `json:"repeatability"` // "aliquots": from this case; "none": inside a stated component
-	Components    []StatedComponent `json:"components"`
+	Repeatability string            `json:"repeatability" key:"repeatability" enum:"aliquots|none" doc:"aliquots: from this case; none: inside a stated component."` // "aliquots": from this case; "none": inside a stated component
+	Components    []StatedComponent `json:"components" key:"components"`
 }
 
 type StatedComponent struct {
-	Name     string   `json:"name"`
-	Type     string   `json:"type"`               // "A" or "B"
-	Relative *float64 `json:"relative,omitempty"` // standard uncertainty / value
-	Absolute *float64 `json:"absolute_ng_per_ml,omitempty"`
-	DoF      *float64 `json:"degrees_of_freedom,omitempty"`
-	Source   string   `json:"source"`
+	Name     string   `json:"name" key:"name"`
+	Type     string   `json:"type" key:"type" enum:"A|B"`                                                                                            // "A" or "B"
+	Relative *float64 `json:"relative,omitempty" key:"relative,optional" unit:"fraction" min:"0" max:"1" doc:"Standard uncertainty over the value."` // standard uncertainty / value
+	Absolute *float64 `json:"absolute_ng_per_ml,omitempty" key:"absolute,optional" unit:"ng/mL" min:"0" doc:"Standard uncertainty."`
+	DoF      *float64 `json:"degrees_of_freedom,omitempty" key:"degrees_of_freedom,optional" above:"0" doc:"Absent: infinite."`
+	Source   string   `json:"source" key:"source"`
 }
 
 // Role of an injection in the batch.
@@ -292,22 +292,27 @@ const (
 
 // An Injection is one row of sequence.csv.
 type Injection struct {
-	ID         string    `json:"injection"`
-	File       string    `json:"file"` // path inside the folder, forward slashes
-	Role       Role      `json:"role"`
-	Level      string    `json:"level,omitempty"`
-	Aliquot    string    `json:"aliquot,omitempty"`
-	SampleCode string    `json:"sample_code,omitempty"`
-	Dilution   float64   `json:"dilution"` // factor, 1 where not stated
-	AcquiredAt string    `json:"acquired"` // RFC 3339
-	Operator   string    `json:"operator"`
-	Note       string    `json:"note,omitempty"`
-	Nominal    []Nominal `json:"nominal,omitempty"`
+	ID         string    `json:"injection" key:"injection" doc:"Id of the injection, unique."`
+	File       string    `json:"file" key:"file" format:"path"` // path inside the folder, forward slashes
+	Role       Role      `json:"role" key:"role" enum:"solvent-blank|matrix-blank|zero|calibrator|control|negative-control|carryover-blank|sample|excluded"`
+	Level      string    `json:"level,omitempty" key:"level,optional"`
+	Aliquot    string    `json:"aliquot,omitempty" key:"aliquot,optional"`
+	SampleCode string    `json:"sample_code,omitempty" key:"sample_code,optional"`
+	Dilution   float64   `json:"dilution" key:"dilution" above:"0" doc:"Factor; 1 where it is empty."` // factor, 1 where not stated
+	AcquiredAt string    `json:"acquired" key:"acquired" format:"rfc3339"`                             // RFC 3339
+	Operator   string    `json:"operator" key:"operator" doc:"Code of a person."`
+	Note       string    `json:"note,omitempty" key:"note,optional" doc:"Needed for an excluded injection."`
+	Nominal    []Nominal `json:"nominal,omitempty" key:"nominal,optional" doc:"Columns named: nominal ANALYTE [ng/mL]."`
 	Line       int       `json:"line"` // in sequence.csv
+
+	columns map[string]int // places of the fields in the line
 }
+
+// column is the place in its line of a field, counting characters from 1; 0 where it is not known.
+func (i *Injection) column(name string) int { return i.columns[name] }
 
 // A Nominal is the known concentration of one analyte in a calibrator or control.
 type Nominal struct {
-	Analyte string  `json:"analyte"`
-	NGPerML float64 `json:"ng_per_ml"`
+	Analyte string  `json:"analyte" key:"analyte"`
+	NGPerML float64 `json:"ng_per_ml" key:"ng_per" unit:"ng/mL" min:"0"`
 }

@@ -6,17 +6,17 @@ package peak
 
 // Parameters steer detection and integration; they come from the method and are recorded with every peak.
 type Parameters struct {
-	SmoothingPoints int     `json:"smoothing_points"`    // odd number of points of the Savitzky–Golay window, used for detection only
-	MinSN           float64 `json:"min_signal_to_noise"` // a peak must be at least this high, in units of noise
-	MinWidthMin     float64 `json:"min_width_min"`       // narrowest width at half height that is a peak, minutes; 0 is no limit
-	Shared          Shared  `json:"shared_valley"`       // how two peaks that share a valley are divided
+	SmoothingPoints int     `json:"smoothing_points" key:"smoothing_points" min:"5" max:"101" doc:"Odd number of points of the smoothing window, for detection only."` // odd number of points of the Savitzky–Golay window, used for detection only
+	MinSN           float64 `json:"min_signal_to_noise" key:"min_signal_to_noise" above:"0"`                                                                           // a peak must be at least this high, in units of noise
+	MinWidthMin     float64 `json:"min_width_min" key:"min_width" unit:"min" min:"0" doc:"Narrowest width at half height that is a peak."`                             // narrowest width at half height that is a peak, minutes; 0 is no limit
+	Shared          Shared  `json:"shared_valley" key:"shared_valley" enum:"perpendicular-drop|valley-to-valley"`                                                      // how two peaks that share a valley are divided
 
 	// ValleyFraction is the depth at which a shared valley stops being one: when it lies lower above the common baseline than
 	// this fraction of the smaller peak's height, the two are separate peaks with baselines of their own. 0 keeps all in common.
-	ValleyFraction float64 `json:"valley_fraction"`
+	ValleyFraction float64 `json:"valley_fraction" key:"valley_fraction" unit:"fraction" min:"0" max:"0.999" doc:"Depth at which a shared valley separates; 0: never."`
 
 	// EdgeFraction is the fraction of its height to which a flank is followed; see Detect. 0 stands for 2^-13 (0.012 %).
-	EdgeFraction float64 `json:"edge_fraction,omitempty"`
+	EdgeFraction float64 `json:"edge_fraction,omitempty" key:"edge_fraction,optional" unit:"fraction" min:"0" max:"0.1" doc:"Height to which a flank is followed; 0: 0.012 %."`
 }
 
 // Shared is the treatment of two peaks that share a valley.

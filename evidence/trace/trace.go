@@ -19,9 +19,9 @@ const (
 // A Transition names what a chromatogram followed: precursor and product ion by their m/z (dimensionless, as the file
 // gives them), and the polarity. The zero values mean that the file does not say.
 type Transition struct {
-	PrecursorMZ float64  `json:"precursor_mz,omitempty"`
-	ProductMZ   float64  `json:"product_mz,omitempty"`
-	Polarity    Polarity `json:"polarity,omitempty"`
+	PrecursorMZ float64  `json:"precursor_mz,omitempty" key:"precursor,optional" above:"0" doc:"m/z of the precursor ion."`
+	ProductMZ   float64  `json:"product_mz,omitempty" key:"product,optional" above:"0" doc:"m/z of the product ion."`
+	Polarity    Polarity `json:"polarity,omitempty" key:"polarity,optional" enum:"positive|negative"`
 }
 
 // A Chromatogram is one recorded trace. TimeMin and Intensity have the same length; times are in minutes and strictly
