@@ -1,0 +1,62 @@
+// Package formats tells which format a raw file is in, by its content, and reads it. A format is one folder beside this one and one
+// line in the list below.
+package formats
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"assaywrit/evidence/trace"
+	"assaywrit/evidence/trace/mzml"
+	"assaywrit/evidence/trace/table"
+)
+
+// A format recognises its files by their first bytes.
+type format struct {
+	name  string
+	sniff func(head []byte) bool
+	read  func(name string, src trace.Source) (*trace.File, error)
+}
+
+var known = []format{
+	{"mzML 1.1", mzml.Sniff, mzml.Read},
+}
+
+// headBytes is how much of a file is looked at to recognise it.
+const headBytes = 4096
+
+// Names lists the formats that are read.
+func Names() []string {
+	var names []string
+	for _, f := range known {
+		names = append(names, f.name)
+	}
+	return append(names, "delimited text (declared in the method's tables)")
+}
+
+// Read reads a raw file in whatever format it is. Delimited text has no mark of its own: tables gives the layout that the method
+// declares for a name, if it does.
+func Read(name string, src trace.Source, tables func(name string) (table.Layout, bool)) (*trace.File, error) {
+	head := make([]byte, min(headBytes, src.Size()))
+	if n, err := src.ReadAt(head, 0); n < len(head) && err != io.EOF {
+		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	for _, f := range known {
+		if f.sniff(head) {
+			return f.read(name, src)
+		}
+	}
+	if layout, ok := tables(name); ok {
+		return table.Read(name, src, layout)
+	}
+	return nil, &trace.SyntaxError{File: name, Got: describe(head), Want: "one of: " + strings.Join(Names(), ", "),
+		Hint: "export the run from the instrument's software in an open format"}
+}
+
+func describe(head []byte) string {
+	if len(head) == 0 {
+		return "an empty file"
+	}
+	return fmt.Sprintf("content that begins with %.16q", head)
+}
