@@ -138,7 +138,7 @@ func atThreshold(r *evidence.Result, threshold float64) *float64 {
 	if !(r.NGPerML > 0) {
 		return nil
 	}
-	u := r.Budget.StdU / r.NGPerML * threshold
+	u := float64(r.Budget.StdU / r.NGPerML * threshold)
 	if math.IsInf(u, 0) {
 		return nil
 	}

@@ -17,7 +17,7 @@ func components(a casefile.Analyte, r *Result, dilution float64) ([]uncertainty.
 		return nil, fmt.Errorf("the method states no uncertainty for %s", a.ID)
 	}
 	parts := []uncertainty.Component{{
-		Name: "calibration line", Type: "A", StdU: r.Prediction.StdULine * dilution, Sensitivity: 1,
+		Name: "calibration line", Type: "A", StdU: float64(r.Prediction.StdULine * dilution), Sensitivity: 1,
 		DoF: ptr(float64(r.Prediction.DoF)), Source: "this batch: covariance of intercept and slope",
 	}}
 	if a.Uncertainty.Repeatability == "aliquots" {
@@ -33,7 +33,7 @@ func components(a casefile.Analyte, r *Result, dilution float64) ([]uncertainty.
 		u := 0.0
 		switch {
 		case c.Relative != nil:
-			u = *c.Relative * math.Abs(r.NGPerML)
+			u = float64(*c.Relative * math.Abs(r.NGPerML))
 		case c.Absolute != nil:
 			u = *c.Absolute
 		default:

@@ -78,5 +78,5 @@ func ionMatch(inj *Injection, compound, name string, quant, base *peak.Peak, ref
 // lower bound.
 func abundanceStdU(p, base *peak.Peak) float64 {
 	up, ub := p.AreaStdU/p.Area, base.AreaStdU/base.Area
-	return p.Area / base.Area * math.Sqrt(float64(up*up)+float64(ub*ub))
+	return float64(p.Area / base.Area * math.Sqrt(float64(up*up)+float64(ub*ub)))
 }

@@ -93,7 +93,7 @@ func concentration(rec *Record, a casefile.Analyte, cal *Calibration, index int)
 		return c
 	}
 	c.ReadNGPerML, c.StdU = ptr(p.X), ptr(p.StdU)
-	c.NGPerML = ptr(p.X * inj.Dilution)
+	c.NGPerML = ptr(float64(p.X * inj.Dilution))
 	c.InRange = ptr(p.X >= cal.LowNGPerML && p.X <= cal.HighNGPerML)
 	if c.NominalNGPerML != nil && *c.NominalNGPerML > 0 {
 		c.Bias = ptr(*c.NGPerML / *c.NominalNGPerML - 1)

@@ -64,6 +64,7 @@ func rootCommand(s streams) *cobra.Command {
 			return cmd.Help()
 		},
 	}
+	root.SuggestionsMinimumDistance = 2
 	root.SetUsageTemplate(root.UsageTemplate() + "\n" + exitHelp)
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
 		return &failure{exitUsage, err, "see " + cmd.CommandPath() + " -h"}

@@ -69,6 +69,10 @@ func TestSameBytes(t *testing.T) {
 	if !bytes.Equal(signedBundle(t), other) {
 		t.Error("the same signatures in another order give other bytes")
 	}
+	directory, _, _, err := (layout{bytes.NewReader(first), int64(len(first))}).end()
+	if err != nil || !bytes.HasPrefix(other, first[:directory]) {
+		t.Errorf("signing changed entries that were there (%v)", err)
+	}
 }
 
 func TestSignedBundle(t *testing.T) {

@@ -188,8 +188,8 @@ func (f *Fit) Predict(y float64, m int, weight float64) (Prediction, error) {
 	line := 1/f.SumW + float64(d*d)/f.Sxx
 	return Prediction{
 		X:        (y - f.A) / f.B,
-		StdU:     f.S / f.B * math.Sqrt(1/float64(weight*float64(m))+line),
-		StdULine: f.S / f.B * math.Sqrt(line),
+		StdU:     float64(f.S / f.B * math.Sqrt(1/float64(weight*float64(m))+line)),
+		StdULine: float64(f.S / f.B * math.Sqrt(line)),
 		DoF:      f.DoF, Weight: weight, M: m,
 	}, nil
 }

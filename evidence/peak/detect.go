@@ -100,7 +100,7 @@ func newDetector(c trace.Chromatogram, p Parameters, w *workspace) *detector {
 	for _, v := range d.y {
 		lo, hi = min(lo, v), max(hi, v)
 	}
-	d.floor = (hi - lo) * floorFactor
+	d.floor = float64((hi - lo) * floorFactor)
 	if d.floor == 0 {
 		return d
 	}
@@ -121,7 +121,7 @@ func (d *detector) setNoise(noise float64, points int, method string) {
 		noise, method = d.floor, NoiseFloor
 	}
 	d.noise, d.points, d.method = noise, points, method
-	d.smoothNoise = noise * d.keep
+	d.smoothNoise = float64(noise * d.keep)
 }
 
 // run repeats the search until the noise outside the peaks is the noise that they were found with.
@@ -247,7 +247,7 @@ func (d *detector) isPeak(p *top) bool {
 func (d *detector) isNarrowSpike(p *top, at int) bool {
 	s := shape{t: d.t, y: d.y, left: p.left, right: p.right, top: at, base: p.base.line}
 	h := s.height(at)
-	lone := max(0.5, 1.25*d.keep*d.keep) // the weight of the middle point is keep squared
+	lone := max(0.5, float64(1.25*d.keep*d.keep)) // the weight of the middle point is keep squared
 	if max(s.height(at-1), s.height(at+1)) > h/2 || p.rise > float64(lone*h) {
 		return false
 	}

@@ -63,7 +63,7 @@ func check(c trace.Chromatogram) error {
 		return fail(-1, fmt.Sprintf("%d points", n), "at least five")
 	}
 	// A step too small to divide by, beside the length of the trace, is as good as none.
-	least := (c.TimeMin[n-1] - c.TimeMin[0]) * 0x1p-40
+	least := float64((c.TimeMin[n-1] - c.TimeMin[0]) * 0x1p-40)
 	if !(least > 0 && least < maxMinutes) {
 		least = 0
 	}

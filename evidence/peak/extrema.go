@@ -128,7 +128,7 @@ func (d *detector) scatter(a, b int) float64 {
 		e := d.straightened(i) - d.s[i]
 		sum += float64(e * e)
 	}
-	return math.Sqrt(sum/(float64(to-from+1)*(1-float64(d.keep*d.keep)))) * d.keep
+	return float64(math.Sqrt(sum/(float64(to-from+1)*(1-float64(d.keep*d.keep)))) * d.keep)
 }
 
 // unite takes the last of out away in favour of next, which gets the higher apex of the two. The valley before them is

@@ -47,7 +47,7 @@ func Integrate(c trace.Chromatogram, startMin, endMin, noise float64) (*Peak, er
 		lo, hi = min(lo, v), max(hi, v)
 	}
 	var f facts
-	if floor := (hi - lo) * floorFactor; noise <= floor {
+	if floor := float64((hi - lo) * floorFactor); noise <= floor {
 		noise, f.noiseFloor = floor, true
 	}
 	p := new(Peak)
@@ -102,7 +102,7 @@ func areaStdU(t []float64, left, right int, b baseline, noise float64) float64 {
 	add(b.from.from, min(b.from.to, left-1))
 	add(left, right)
 	add(max(b.to.from, right+1), b.to.to)
-	return math.Sqrt(sum) * noise
+	return float64(math.Sqrt(sum) * noise)
 }
 
 // highest returns the highest point above the line among those between left and right, the ends not included.

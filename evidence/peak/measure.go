@@ -31,7 +31,7 @@ func measure(t, y []float64, left, right int, b baseline, noise float64, f facts
 		k.WidthHalfMin = &w
 		if k.ApexMin > 0 {
 			q := k.ApexMin / w
-			n := 5.54 * float64(q*q)
+			n := float64(5.54 * float64(q*q))
 			k.Plates = &n
 		}
 	}

@@ -43,7 +43,7 @@ func firstNoise(r, scratch []float64) float64 {
 		d = append(d, math.Abs(v))
 	}
 	if q := nth(d, len(d)/4); q > 0 {
-		return q * lowerToSD
+		return float64(q * lowerToSD)
 	}
 	above := d[:0]
 	for _, v := range d {
@@ -54,7 +54,7 @@ func firstNoise(r, scratch []float64) float64 {
 	if len(above) == 0 {
 		return 0
 	}
-	return nth(above, len(above)/2) * madToSD
+	return float64(nth(above, len(above)/2) * madToSD)
 }
 
 // quietNoise estimates the noise from the points marked quiet, as Detect says, and returns with it how many points were
@@ -70,7 +70,7 @@ func quietNoise(t, y, r []float64, quiet []bool, scratch []float64) (float64, in
 	if n < minQuiet {
 		return 0, 0
 	}
-	clip := clipWidth * madToSD * nth(d, n/2)
+	clip := float64(clipWidth * madToSD * nth(d, n/2))
 	if clip == 0 { // more than half of the points are alike, as in thresholded counts
 		clip = math.Inf(1)
 	}
@@ -84,7 +84,7 @@ func quietNoise(t, y, r []float64, quiet []bool, scratch []float64) (float64, in
 	}
 	sd := math.Sqrt(sum / float64(kept))
 	if !math.IsInf(clip, 1) {
-		sd *= clipSD
+		sd = float64(sd * clipSD)
 	}
 	return max(sd, blockNoise(t, y, quiet, scratch)), n
 }

@@ -58,7 +58,7 @@ func parabolaAt(t, y []float64, c int) float64 {
 	for i := range t {
 		u := (t[i] - t[c]) / scale
 		d := y[i] - y[c]
-		u2 := u * u
+		u2 := float64(u * u)
 		s1 += u
 		s2 += float64(u * u)
 		s3 += float64(u2 * u)

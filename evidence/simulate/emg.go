@@ -24,7 +24,7 @@ func (p Peak) At(t float64) float64 {
 	r := p.Sigma / p.Tau
 	z := (r - d) / math.Sqrt2
 	if z >= 0 {
-		return p.Area / (2 * p.Tau) * gauss * strictmath.Erfcx(z)
+		return float64(p.Area / (2 * p.Tau) * gauss * strictmath.Erfcx(z))
 	}
-	return p.Area / (2 * p.Tau) * strictmath.Exp(float64(0.5*r*r)-float64(r*d)) * strictmath.Erfc(z)
+	return float64(p.Area / (2 * p.Tau) * strictmath.Exp(float64(0.5*r*r)-float64(r*d)) * strictmath.Erfc(z))
 }

@@ -3,10 +3,10 @@ package strictmath
 import "math"
 
 // NormCDF is the probability that a standard normal deviate is at most z.
-func NormCDF(z float64) float64 { return 0.5 * Erfc(-z/math.Sqrt2) }
+func NormCDF(z float64) float64 { return float64(0.5 * Erfc(-z/math.Sqrt2)) }
 
 // NormSF is the probability that a standard normal deviate exceeds z, without the cancellation of 1 − NormCDF(z).
-func NormSF(z float64) float64 { return 0.5 * Erfc(z/math.Sqrt2) }
+func NormSF(z float64) float64 { return float64(0.5 * Erfc(z/math.Sqrt2)) }
 
 // NormQuantile is the z with NormCDF(z) = p. It is -Inf for 0, +Inf for 1 and NaN outside. The relative error is below 1e-15
 // but near the centre, where it is absolute.

@@ -36,7 +36,7 @@ func TSF(t, nu float64) float64 {
 	const sqrtPi = 1.77245385090551602730
 	front := float64(Exp(-float64(a*log1p(t2/nu))) * math.Sqrt(y) * gammaRatio(a) / sqrtPi)
 	if x < (a+1)/(a+2.5) {
-		return 0.5 * front / a * betaFraction(a, 0.5, x)
+		return float64(0.5 * front / a * betaFraction(a, 0.5, x))
 	}
 	return 0.5 - float64(0.5*front/0.5*betaFraction(0.5, a, y))
 }
@@ -125,7 +125,7 @@ func upperT(q, nu float64) float64 {
 			return high
 		}
 	}
-	t := 0.5 * (low + high)
+	t := float64(0.5 * (low + high))
 	for range 200 {
 		s := TSF(t, nu)
 		if s > q {
@@ -138,7 +138,7 @@ func upperT(q, nu float64) float64 {
 			next = t + float64(s*Log(s/q))/tDensity(t, nu)
 		}
 		if !(next > low && next < high) {
-			next = 0.5 * (low + high)
+			next = float64(0.5 * (low + high))
 		}
 		if math.Abs(next-t) <= 1e-16*t || next == low || next == high {
 			return next
@@ -151,5 +151,5 @@ func upperT(q, nu float64) float64 {
 // tDensity is Student's density.
 func tDensity(t, nu float64) float64 {
 	const sqrtPi = 1.77245385090551602730
-	return gammaRatio(nu/2) / (sqrtPi * math.Sqrt(nu)) * Exp(-float64(0.5*(nu+1)*log1p(float64(t*t)/nu)))
+	return float64(gammaRatio(nu/2) / (sqrtPi * math.Sqrt(nu)) * Exp(-float64(0.5*(nu+1)*log1p(float64(t*t)/nu))))
 }

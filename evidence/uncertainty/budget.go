@@ -27,7 +27,7 @@ func Combine(value float64, components []Component) (Budget, error) {
 		if c.DoF != nil && !(*c.DoF > 0) {
 			return Budget{}, fmt.Errorf("component %q: %g degrees of freedom, want more than zero", c.Name, *c.DoF)
 		}
-		part := math.Abs(c.Sensitivity) * c.StdU
+		part := float64(math.Abs(c.Sensitivity) * c.StdU)
 		squares[i] = float64(part * part)
 		b.Components = append(b.Components, Line{Component: c, Contribution: part})
 	}
@@ -51,7 +51,7 @@ func Combine(value float64, components []Component) (Budget, error) {
 }
 
 // Expand is the expanded uncertainty U = k·u.
-func Expand(b Budget, k float64) float64 { return k * b.StdU }
+func Expand(b Budget, k float64) float64 { return float64(k * b.StdU) }
 
 // CoverageFactor is the k of a two-sided interval that holds the value with probability p: Student's quantile for the effective
 // degrees of freedom, cut to a whole number (GUM G.4.1 note 1), or the normal one where there are infinitely many (nil).

@@ -116,7 +116,7 @@ func (c compound) trace(i int, precursor, product, expected float64, peaks []sim
 	id := fmt.Sprintf("SRM %.1f > %.1f", precursor, product)
 	s := simulate.NewStream(seed, "noise", batch[i].id(i), id)
 	level := 900 + float64(600*s.Uniform())
-	d := simulate.Detector{Baseline: level, Drift: float64(0.3*level) * s.Normal(), Wave: 0.04 * level, Electronic: 110, Gain: 30}
+	d := simulate.Detector{Baseline: level, Drift: float64(float64(0.3*level) * s.Normal()), Wave: float64(0.04 * level), Electronic: 110, Gain: 30}
 	t, y := d.Record(peaks, expected-halfSpan, expected+halfSpan, cycle, s)
 	return trace.Chromatogram{
 		ID: id, Kind: trace.SRM, Transition: trace.Transition{PrecursorMZ: precursor, ProductMZ: product, Polarity: trace.Positive},

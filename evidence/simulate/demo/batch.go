@@ -85,7 +85,7 @@ func sequence() []byte {
 		fmt.Fprintf(&b, "%s,%s,%s,%s,%s,%s,%s,%s,P-03,%s", r.id(i), r.file(i), r.role, r.level, r.aliquot, code, dilution, acquiredAt(i), r.note)
 		for _, c := range compounds {
 			if r.role == casefile.Calibrator || r.role == casefile.Control {
-				fmt.Fprintf(&b, ",%.10g", r.scale*c.top)
+				fmt.Fprintf(&b, ",%.10g", float64(r.scale*c.top))
 			} else {
 				b.WriteByte(',')
 			}
