@@ -20,7 +20,7 @@ func Erfcx(x float64) float64 {
 	}
 	const invSqrtPi = 0.56418958354775628695
 	s := 1 / (x * x)
-	return float64(invSqrtPi / x * (1 - float64(s*(0.5-float64(s*(0.75-float64(s*(1.875-float64(s*6.5625)))))))))
+	return float64(invSqrtPi / x * horner(s, 1, -1./2, 3./4, -15./8, 105./16, -945./32, 10395./64, -135135./128, 2027025./256))
 }
 
 // expSquare is exp(x²): the part of x² that rounding loses goes into a first-order factor.
