@@ -1,8 +1,10 @@
 package bundle
 
 import (
+	"archive/zip"
 	"bytes"
 	"errors"
+	"io"
 	"io/fs"
 	"math/rand/v2"
 	"slices"
@@ -178,5 +180,46 @@ func TestWriteToAFullDisk(t *testing.T) {
 		if _, err := Write(&failingWriter{room}, testHeader(), payload); !errors.Is(err, errFull) {
 			t.Errorf("room for %d: %v", room, err)
 		}
+	}
+}
+
+// TestPackedAlone compares each deflated entry with what a packer gives that has packed nothing before.
+func TestPackedAlone(t *testing.T) {
+	payload := append(batch(30, 3000), Payload{"large.csv", bytes.Repeat([]byte("0.1,3\n0.2,4\n0.30001,5\n"), 20000)})
+	b := opened(t, written(t, testHeader(), payload))
+	deflatedEntries := 0
+	for _, p := range b.Paths() {
+		f := b.files[p]
+		if f.Method != zip.Deflate {
+			continue
+		}
+		deflatedEntries++
+		data, err := b.ReadFile(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		raw, err := f.OpenRaw()
+		if err != nil {
+			t.Fatal(err)
+		}
+		got, err := io.ReadAll(raw)
+		want, err2 := deflated(data)
+		if err != nil || err2 != nil || !bytes.Equal(got, want) {
+			t.Errorf("%s: packed otherwise than by itself", p)
+		}
+	}
+	if deflatedEntries < 30 {
+		t.Errorf("only %d entries are deflated", deflatedEntries)
+	}
+}
+
+// TestRepetitiveText is stored where deflating it would go beyond what Open allows.
+func TestRepetitiveText(t *testing.T) {
+	b := opened(t, written(t, testHeader(), []Payload{{"zeros.csv", bytes.Repeat([]byte("0\n"), 5<<20)}}))
+	if b.files["data/zeros.csv"].Method != zip.Store {
+		t.Error("it was deflated")
+	}
+	if problems := b.CheckFiles(); len(problems) > 0 {
+		t.Error(problems)
 	}
 }

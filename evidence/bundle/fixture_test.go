@@ -154,3 +154,12 @@ func zipped(t testing.TB, names []string, content map[string][]byte) []byte {
 	}
 	return out.Bytes()
 }
+
+// deflated packs data with a packer of its own.
+func deflated(data []byte) ([]byte, error) {
+	p, err := newPacker()
+	if err != nil {
+		return nil, err
+	}
+	return p.deflated(data)
+}

@@ -107,6 +107,10 @@ func AddSignature(w io.Writer, b *Bundle, fileName string, p7s []byte) error {
 
 // copyWith copies all entries, the signatures last and sorted, with the new one among them.
 func (b *Bundle) copyWith(z *zip.Writer, path string, p7s []byte) error {
+	pack, err := newPacker()
+	if err != nil {
+		return err
+	}
 	for _, p := range b.paths {
 		if !isSignaturePath(p) {
 			if err := z.Copy(b.files[p]); err != nil {
@@ -117,9 +121,8 @@ func (b *Bundle) copyWith(z *zip.Writer, path string, p7s []byte) error {
 	signatures := append(b.SignaturePaths(), path)
 	slices.Sort(signatures)
 	for _, p := range signatures {
-		var err error
 		if p == path {
-			err = writeEntry(z, p, p7s)
+			err = pack.writeEntry(z, p, p7s)
 		} else {
 			err = z.Copy(b.files[p])
 		}
