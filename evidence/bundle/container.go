@@ -102,6 +102,19 @@ func checkExtra(extra []byte) error {
 	return nil
 }
 
+// withoutZip64 returns extra fields (that checkExtra has seen) without the one that holds zip64 sizes.
+func withoutZip64(extra []byte) []byte {
+	var kept []byte
+	for len(extra) >= 4 {
+		size := 4 + int(binary.LittleEndian.Uint16(extra[2:]))
+		if binary.LittleEndian.Uint16(extra) != 1 {
+			kept = append(kept, extra[:size]...)
+		}
+		extra = extra[size:]
+	}
+	return kept
+}
+
 // A layout follows a zip file from its first octet to its last. Readers of zip files differ in what they overlook: data
 // before, between and after entries, or a local header that disagrees with the directory. Here nothing may be overlooked.
 type layout struct {

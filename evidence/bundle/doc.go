@@ -16,11 +16,14 @@
 //
 // This is a whole one, in lines for the eye (the file has none):
 //
-//	{"bag_info_sha256":"eb2ad1a5…","bagit_sha256":"e91f941b…","bundle_id":"6db6d1a5-…","case":"C-0417",
-//	 "demonstration":false,"engine_name":"assaywrit","engine_version":"1.0.0","format":"assaywrit-statement/1",
-//	 "laboratory":"LAB-07","manifest_sha256":"b1bba4ac…","merkle_root":"6db6d1a5…","payload_files":2,"payload_octets":31,
-//	 "sample_code":"S-1","signatories":[{"meaning":"authorised","person":"P-05","position":"certifying scientist"}],
-//	 "toolchain":"go1.26"}
+//	{"bag_info_sha256":"5b49e686216302bdb5e241d8285cdb9f928f3afe1fe59d5920834c28127c9894",
+//	 "bagit_sha256":"1712ecfb074bf29c4188ad3421032509159a09739fd604f8fe57038b4ddefcc9",
+//	 "bundle_id":"fb330702-b67a-83f5-bc87-32118c44fbc5","case":"C-0417","demonstration":false,
+//	 "engine_name":"assaywrit","engine_version":"1.0.0","format":"assaywrit-statement/1","laboratory":"LAB-07",
+//	 "manifest_sha256":"64ef0372426386bddc182eb8e3a95859be55feb90797125e4931fc10bfb18097",
+//	 "merkle_root":"fb330702b67ac3f53c8732118c44fbc5b67ae2a08a0d10382ba10ebc850b12ac","payload_files":2,
+//	 "payload_octets":15,"sample_code":"S-100200","signatories":[{"meaning":"authorised","person":"P-05",
+//	 "position":"certifying scientist"}],"toolchain":"go1.26"}
 //
 // supersedes ({"reason", "root"}), evidence_sha256 and finding_sha256 are left out where they do not apply.
 //

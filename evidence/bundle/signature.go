@@ -113,7 +113,7 @@ func (b *Bundle) copyWith(z *zip.Writer, path string, p7s []byte) error {
 	}
 	for _, p := range b.paths {
 		if !isSignaturePath(p) {
-			if err := z.Copy(b.files[p]); err != nil {
+			if err := copyEntry(z, b.files[p]); err != nil {
 				return err
 			}
 		}
@@ -124,13 +124,29 @@ func (b *Bundle) copyWith(z *zip.Writer, path string, p7s []byte) error {
 		if p == path {
 			err = pack.writeEntry(z, p, p7s)
 		} else {
-			err = z.Copy(b.files[p])
+			err = copyEntry(z, b.files[p])
 		}
 		if err != nil {
 			return err
 		}
 	}
 	return nil
+}
+
+// copyEntry copies an entry as it is packed. Its zip64 sizes are left out, since the writer puts its own.
+func copyEntry(z *zip.Writer, f *zip.File) error {
+	raw, err := f.OpenRaw()
+	if err != nil {
+		return err
+	}
+	h := f.FileHeader
+	h.Extra = withoutZip64(h.Extra)
+	w, err := z.CreateRaw(&h)
+	if err != nil {
+		return err
+	}
+	_, err = io.Copy(w, raw)
+	return err
 }
 
 // checkSignatureName accepts names that need no thought on any system.

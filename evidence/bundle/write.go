@@ -138,6 +138,9 @@ func (p *packer) writeEntry(z *zip.Writer, name string, data []byte) error {
 	if strings.ContainsFunc(name, func(r rune) bool { return r >= 0x80 }) {
 		h.Flags |= flagUTF8
 	}
+	if h.UncompressedSize64 >= 1<<32-1 {
+		h.Flags |= flagDescriptor // sizes beyond 32 bits stand behind the content: archive/zip does not put them in front
+	}
 	body := data
 	if !compressedAlready[strings.ToLower(path.Ext(name))] {
 		small, err := p.deflated(data)
