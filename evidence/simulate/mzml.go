@@ -7,18 +7,40 @@ import (
 	"encoding/binary"
 	"encoding/hex"
 	"encoding/xml"
+	"errors"
 	"fmt"
 	"io"
 	"math"
+	"regexp"
+	"time"
 
 	"github.com/klauspost/compress/zlib"
 
 	"assaywrit/evidence/trace"
 )
 
-// WriteMzML writes a run as indexed mzML 1.1.0: times as 64-bit and intensities as 32-bit floats, both with zlib, with right offsets
-// and checksum. The same run gives the same bytes.
+// A Run is one injection as an instrument would write it down.
+type Run struct {
+	ID         string // of the run in the file: a letter or _, then letters, digits, -, _ and .
+	SampleCode string
+	StartTime  string // RFC 3339
+	Model      string // description of the instrument
+	Serial     string
+	Software   string
+	Version    string
+	Traces     []trace.Chromatogram
+}
+
+// WriteMzML writes a run as indexed mzML 1.1.0 (HUPO Proteomics Standards Initiative, June 2009): times in minutes as 64-bit and
+// intensities as 32-bit floats, both with zlib, with right offsets and SHA-1. The same run gives the same bytes. A trace without
+// polarity, or with an m/z of 0, is written without it.
+//
+// What would make a file that its schema or a strict reader refuses is an error, and nothing is written: an ID or StartTime of the
+// wrong form, a trace without id or with that of another, times that do not increase, numbers that are not finite in 32 bits.
 func WriteMzML(w io.Writer, run Run) error {
+	if err := run.check(); err != nil {
+		return err
+	}
 	m := &mzmlWriter{}
 	m.head(run)
 	for i, c := range run.Traces {
@@ -31,6 +53,57 @@ func WriteMzML(w io.Writer, run Run) error {
 	_, err := w.Write(m.buf.Bytes())
 	return err
 }
+
+// ncName is the part of XML's NCName (Namespaces in XML 1.0) that is used here: the schema gives run ids that type.
+var ncName = regexp.MustCompile(`^[A-Za-z_][A-Za-z0-9._-]*$`)
+
+func (run Run) check() error {
+	if !ncName.MatchString(run.ID) || run.ID == sampleID || run.ID == softwareID || run.ID == instrumentID || run.ID == processingID {
+		return fmt.Errorf("simulate: the run id %q, want a name of letters, digits, -, _ and . that the file does not use otherwise", run.ID)
+	}
+	if _, err := time.Parse(time.RFC3339, run.StartTime); err != nil {
+		return fmt.Errorf("simulate: the start time %q, want one like 2026-03-18T08:30:00+01:00", run.StartTime)
+	}
+	if len(run.Traces) == 0 {
+		return errors.New("simulate: a run without traces, want at least one")
+	}
+	ids := map[string]bool{}
+	for _, c := range run.Traces {
+		if c.ID == "" || ids[c.ID] {
+			return fmt.Errorf("simulate: the trace id %q, want one that no other trace has", c.ID)
+		}
+		ids[c.ID] = true
+		if err := checkPoints(c); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// checkPoints refuses what breaks the contract of a trace, or does not fit into 32 bits.
+func checkPoints(c trace.Chromatogram) error {
+	if len(c.TimeMin) != len(c.Intensity) {
+		return fmt.Errorf("simulate: trace %q: %d times and %d intensities, want as many of each", c.ID, len(c.TimeMin), len(c.Intensity))
+	}
+	for i, t := range c.TimeMin {
+		y := float64(float32(c.Intensity[i]))
+		switch {
+		case math.IsNaN(t) || math.IsInf(t, 0) || i > 0 && t <= c.TimeMin[i-1]:
+			return fmt.Errorf("simulate: trace %q, point %d: a time of %g min, want a finite one after the point before", c.ID, i+1, t)
+		case math.IsNaN(y) || math.IsInf(y, 0):
+			return fmt.Errorf("simulate: trace %q, point %d: an intensity of %g, want a finite one that 32 bits hold", c.ID, i+1, c.Intensity[i])
+		}
+	}
+	return nil
+}
+
+// ids within the file.
+const (
+	sampleID     = "sample"
+	softwareID   = "acquisition"
+	instrumentID = "instrument"
+	processingID = "export"
+)
 
 type mzmlWriter struct {
 	buf     bytes.Buffer
@@ -48,7 +121,7 @@ func esc(s string) string {
 
 func (m *mzmlWriter) head(run Run) {
 	m.f(`<?xml version="1.0" encoding="utf-8"?>
-<indexedmzML xmlns="http://psi.hupo.org/ms/mzml" xmlns:xsi="http://www.w3.org/2001/XMLSchema-instance" xsi:schemaLocation="http://psi.hupo.org/ms/mzml http://psidev.info/files/ms/mzML/xsd/mzML1.1.2_idx.xsd">
+<indexedmzML xmlns="http://psi.hupo.org/ms/mzml" xmlns:xsi="http://www.w3.org/2001/XMLSchema-instance" xsi:schemaLocation="http://psi.hupo.org/ms/mzml http://psidev.info/files/ms/mzML/xsd/mzML1.1.0_idx.xsd">
   <mzML xmlns="http://psi.hupo.org/ms/mzml" id="%s" version="1.1.0">
     <cvList count="2">
       <cv id="MS" fullName="Proteomics Standards Initiative Mass Spectrometry Ontology" URI="https://purl.obolibrary.org/obo/ms/psi-ms.obo"/>
@@ -60,92 +133,114 @@ func (m *mzmlWriter) head(run Run) {
       </fileContent>
     </fileDescription>
     <sampleList count="1">
-      <sample id="sample" name="%s"/>
+      <sample id="%s" name="%s"/>
     </sampleList>
     <softwareList count="1">
-      <software id="acquisition" version="%s">
+      <software id="%s" version="%s">
         <cvParam cvRef="MS" accession="MS:1000799" name="custom unreleased software tool" value="%s"/>
       </software>
     </softwareList>
-    <instrumentConfigurationList count="1">
-      <instrumentConfiguration id="instrument">
-        <cvParam cvRef="MS" accession="MS:1000031" name="instrument model" value="%s"/>
-        <cvParam cvRef="MS" accession="MS:1000529" name="instrument serial number" value="%s"/>
-        <componentList count="3">
-          <source order="1">
-            <cvParam cvRef="MS" accession="MS:1000073" name="electrospray ionization" value=""/>
-          </source>
-          <analyzer order="2">
-            <cvParam cvRef="MS" accession="MS:1000081" name="quadrupole" value=""/>
-          </analyzer>
-          <detector order="3">
-            <cvParam cvRef="MS" accession="MS:1000253" name="electron multiplier" value=""/>
-          </detector>
-        </componentList>
-      </instrumentConfiguration>
-    </instrumentConfigurationList>
-    <dataProcessingList count="1">
-      <dataProcessing id="export">
-        <processingMethod order="1" softwareRef="acquisition">
+`, esc(run.ID), sampleID, esc(run.SampleCode), softwareID, esc(run.Version), esc(run.Software))
+	m.instrument(run)
+	m.f(`    <dataProcessingList count="1">
+      <dataProcessing id="%s">
+        <processingMethod order="1" softwareRef="%s">
           <cvParam cvRef="MS" accession="MS:1000544" name="Conversion to mzML" value=""/>
         </processingMethod>
       </dataProcessing>
     </dataProcessingList>
-    <run id="%s" defaultInstrumentConfigurationRef="instrument" sampleRef="sample" startTimeStamp="%s">
-      <chromatogramList count="%d" defaultDataProcessingRef="export">
-`, esc(run.ID), esc(run.SampleCode), esc(run.Version), esc(run.Software), esc(run.Model), esc(run.Serial), esc(run.ID), esc(run.StartTime), len(run.Traces))
+    <run id="%s" defaultInstrumentConfigurationRef="%s" sampleRef="%s" startTimeStamp="%s">
+      <chromatogramList count="%d" defaultDataProcessingRef="%s">
+`, processingID, softwareID, esc(run.ID), instrumentID, sampleID, esc(run.StartTime), len(run.Traces), processingID)
+}
+
+// instrument describes a triple quadrupole: the second quadrupole is the collision cell.
+func (m *mzmlWriter) instrument(run Run) {
+	m.f(`    <instrumentConfigurationList count="1">
+      <instrumentConfiguration id="%s">
+        <cvParam cvRef="MS" accession="MS:1000031" name="instrument model" value="%s"/>
+        <cvParam cvRef="MS" accession="MS:1000529" name="instrument serial number" value="%s"/>
+        <componentList count="5">
+          <source order="1">
+            <cvParam cvRef="MS" accession="MS:1000073" name="electrospray ionization" value=""/>
+          </source>
+`, instrumentID, esc(run.Model), esc(run.Serial))
+	for order := 2; order <= 4; order++ {
+		m.f(`          <analyzer order="%d">
+            <cvParam cvRef="MS" accession="MS:1000081" name="quadrupole" value=""/>
+          </analyzer>
+`, order)
+	}
+	m.f(`          <detector order="5">
+            <cvParam cvRef="MS" accession="MS:1000253" name="electron multiplier" value=""/>
+          </detector>
+        </componentList>
+        <softwareRef ref="%s"/>
+      </instrumentConfiguration>
+    </instrumentConfigurationList>
+`, softwareID)
 }
 
 func (m *mzmlWriter) chromatogram(i int, c trace.Chromatogram) error {
-	polarity := `accession="MS:1000130" name="positive scan"`
-	if c.Transition.Polarity == trace.Negative {
-		polarity = `accession="MS:1000129" name="negative scan"`
+	m.f(`      <chromatogram index="%d" id="%s" defaultArrayLength="%d">
+        <cvParam cvRef="MS" accession="MS:1001473" name="selected reaction monitoring chromatogram" value=""/>
+`, i, esc(c.ID), len(c.TimeMin))
+	switch c.Transition.Polarity {
+	case trace.Positive:
+		m.f("        <cvParam cvRef=\"MS\" accession=\"MS:1000130\" name=\"positive scan\" value=\"\"/>\n")
+	case trace.Negative:
+		m.f("        <cvParam cvRef=\"MS\" accession=\"MS:1000129\" name=\"negative scan\" value=\"\"/>\n")
 	}
+	m.f("        <precursor>\n")
+	m.isolation(c.Transition.PrecursorMZ)
+	m.f(`          <activation>
+            <cvParam cvRef="MS" accession="MS:1000133" name="collision-induced dissociation" value=""/>
+          </activation>
+        </precursor>
+        <product>
+`)
+	m.isolation(c.Transition.ProductMZ)
+	m.f("        </product>\n        <binaryDataArrayList count=\"2\">\n")
 	times, ints := make([]byte, 8*len(c.TimeMin)), make([]byte, 4*len(c.Intensity))
 	for k, t := range c.TimeMin {
 		binary.LittleEndian.PutUint64(times[8*k:], math.Float64bits(t))
 		binary.LittleEndian.PutUint32(ints[4*k:], math.Float32bits(float32(c.Intensity[k])))
 	}
-	timeText, err := packed(times)
+	if err := m.array(times, `accession="MS:1000523" name="64-bit float"`,
+		`accession="MS:1000595" name="time array" value="" unitCvRef="UO" unitAccession="UO:0000031" unitName="minute"`); err != nil {
+		return err
+	}
+	if err := m.array(ints, `accession="MS:1000521" name="32-bit float"`,
+		`accession="MS:1000515" name="intensity array" value="" unitCvRef="MS" unitAccession="MS:1000131" unitName="number of detector counts"`); err != nil {
+		return err
+	}
+	m.f("        </binaryDataArrayList>\n      </chromatogram>\n")
+	return nil
+}
+
+// isolation writes the window of a precursor or product; 0 means that its m/z is not known.
+func (m *mzmlWriter) isolation(mz float64) {
+	if mz == 0 {
+		return
+	}
+	m.f(`          <isolationWindow>
+            <cvParam cvRef="MS" accession="MS:1000827" name="isolation window target m/z" value="%g" unitCvRef="MS" unitAccession="MS:1000040" unitName="m/z"/>
+          </isolationWindow>
+`, mz)
+}
+
+func (m *mzmlWriter) array(data []byte, number, content string) error {
+	text, err := packed(data)
 	if err != nil {
 		return err
 	}
-	intText, err := packed(ints)
-	if err != nil {
-		return err
-	}
-	m.f(`      <chromatogram index="%d" id="%s" defaultArrayLength="%d">
-        <cvParam cvRef="MS" accession="MS:1001473" name="selected reaction monitoring chromatogram" value=""/>
-        <cvParam cvRef="MS" %s value=""/>
-        <precursor>
-          <isolationWindow>
-            <cvParam cvRef="MS" accession="MS:1000827" name="isolation window target m/z" value="%g" unitCvRef="MS" unitAccession="MS:1000040" unitName="m/z"/>
-          </isolationWindow>
-          <activation>
-            <cvParam cvRef="MS" accession="MS:1000133" name="collision-induced dissociation" value=""/>
-          </activation>
-        </precursor>
-        <product>
-          <isolationWindow>
-            <cvParam cvRef="MS" accession="MS:1000827" name="isolation window target m/z" value="%g" unitCvRef="MS" unitAccession="MS:1000040" unitName="m/z"/>
-          </isolationWindow>
-        </product>
-        <binaryDataArrayList count="2">
-          <binaryDataArray encodedLength="%d">
-            <cvParam cvRef="MS" accession="MS:1000523" name="64-bit float" value=""/>
+	m.f(`          <binaryDataArray encodedLength="%d">
+            <cvParam cvRef="MS" %s value=""/>
             <cvParam cvRef="MS" accession="MS:1000574" name="zlib compression" value=""/>
-            <cvParam cvRef="MS" accession="MS:1000595" name="time array" value="" unitCvRef="UO" unitAccession="UO:0000031" unitName="minute"/>
+            <cvParam cvRef="MS" %s/>
             <binary>%s</binary>
           </binaryDataArray>
-          <binaryDataArray encodedLength="%d">
-            <cvParam cvRef="MS" accession="MS:1000521" name="32-bit float" value=""/>
-            <cvParam cvRef="MS" accession="MS:1000574" name="zlib compression" value=""/>
-            <cvParam cvRef="MS" accession="MS:1000515" name="intensity array" value="" unitCvRef="MS" unitAccession="MS:1000131" unitName="number of detector counts"/>
-            <binary>%s</binary>
-          </binaryDataArray>
-        </binaryDataArrayList>
-      </chromatogram>
-`, i, esc(c.ID), len(c.TimeMin), polarity, c.Transition.PrecursorMZ, c.Transition.ProductMZ, len(timeText), timeText, len(intText), intText)
+`, len(text), number, content, text)
 	return nil
 }
 

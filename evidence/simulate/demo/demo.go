@@ -12,9 +12,6 @@ import (
 	"assaywrit/evidence/simulate"
 )
 
-// seed of every random number in the example.
-const seed = 20260417
-
 // A File is one file of the case folder; its path has forward slashes.
 type File struct {
 	Path string
@@ -39,8 +36,12 @@ func Files() ([]File, error) {
 		return nil, err
 	}
 	files = append(files, File{"sequence.csv", sequence()})
+	b := simulated()
 	for i, row := range batch {
-		run := acquire(i)
+		run, err := acquire(b, i)
+		if err != nil {
+			return nil, fmt.Errorf("%s: %w", row.file(i), err)
+		}
 		var out bytes.Buffer
 		if err := simulate.WriteMzML(&out, run); err != nil {
 			return nil, fmt.Errorf("%s: %w", row.file(i), err)
