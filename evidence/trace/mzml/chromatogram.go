@@ -7,12 +7,18 @@ import (
 	"assaywrit/evidence/trace"
 )
 
+// maxPoints is the most that one file may hold in all its arrays: 512 MiB of memory.
+const maxPoints = 1 << 26
+
 // A chromatogram gathers one chromatogram element.
 type chromatogram struct {
-	c          trace.Chromatogram
-	start      int // of its tag
-	length     int // defaultArrayLength
-	time, ints *values
+	c               trace.Chromatogram
+	start           int    // of its tag
+	length          int    // defaultArrayLength
+	kind            string // accession
+	selected        float64
+	time, intensity *values
+	auxiliary       string // what it records of the pump or the oven
 }
 
 // values is a decoded array.
@@ -23,63 +29,86 @@ type values struct {
 
 func (r *reader) startChromatogram(at int) error {
 	s := r.s
-	n, err := strconv.Atoi(s.attr("defaultArrayLength"))
-	if err != nil || n < 0 {
+	n, ok := count(s.attr("defaultArrayLength"))
+	if !ok {
 		return s.fail(at, fmt.Sprintf("defaultArrayLength %q", s.attr("defaultArrayLength")), "a number of points", "")
 	}
 	id := s.attr("id")
 	if id == "" || r.ids[id] {
 		return s.fail(at, fmt.Sprintf("the chromatogram id %q", id), "an id that no other chromatogram has", "")
 	}
-	if r.ids == nil {
-		r.ids = map[string]bool{}
-	}
-	r.ids[id] = true
+	r.ids[id], r.order = true, append(r.order, id)
 	r.chrom = &chromatogram{c: trace.Chromatogram{ID: id, Kind: trace.Other}, start: at, length: n}
 	return nil
 }
 
-// term applies a vocabulary term of the chromatogram, its precursor or its product.
-func (c *chromatogram) term(r *reader, t term, at int) error {
-	switch t.accession {
-	case accNegative:
-		c.c.Transition.Polarity = trace.Negative
-	case accPositive:
-		c.c.Transition.Polarity = trace.Positive
-	case accTarget, accSelected:
-		mz, err := strconv.ParseFloat(t.value, 64)
-		if err != nil || !(mz >= 0) || mz > 1e6 {
-			return r.s.fail(at, fmt.Sprintf("m/z %q", t.value), "a number of at least 0 (0: not stated)", "")
+// count reads a number of points.
+func count(text string) (int, bool) {
+	n, err := strconv.ParseUint(text, 10, 31)
+	return int(n), err == nil
+}
+
+// term applies a term of the chromatogram itself.
+func (c *chromatogram) term(s *scanner, t term, at int) error {
+	polarity := map[string]trace.Polarity{accNegative: trace.Negative, accPositive: trace.Positive}[t.accession]
+	kind, isKind := kindsByAccession[t.accession]
+	switch {
+	case polarity != "":
+		if old := c.c.Transition.Polarity; old != "" && old != polarity {
+			return s.fail(at, fmt.Sprintf("the polarities %s and %s in the chromatogram %q", old, polarity, c.c.ID), "one", "")
 		}
-		switch {
-		case r.within("product"):
-			c.c.Transition.ProductMZ = mz
-		case r.within("precursor") && (t.accession == accTarget || c.c.Transition.PrecursorMZ == 0):
-			c.c.Transition.PrecursorMZ = mz
+		c.c.Transition.Polarity = polarity
+	case isKind:
+		if c.kind != "" && c.kind != t.accession {
+			return s.fail(at, fmt.Sprintf("the chromatogram types %s and %s in the chromatogram %q", c.kind, t.accession, c.c.ID), "one", "")
 		}
-	default:
-		if kind, ok := kindsByAccession[t.accession]; ok {
-			c.c.Kind = kind
-		}
+		c.kind, c.c.Kind = t.accession, kind
 	}
 	return nil
 }
 
-// take decodes an array of this chromatogram; arrays other than time and intensity are left alone.
-func (c *chromatogram) take(s *scanner, b *binaryArray) error {
-	var slot **values
+// ion applies a term of a precursor or product. The target of the isolation counts; the selected ion stands in where it is missing.
+func (c *chromatogram) ion(s *scanner, t term, of string, at int) error {
+	if t.accession != accTarget && t.accession != accSelected {
+		return nil
+	}
+	mz, ok := trace.Decimal(t.value)
+	if !ok || mz < 0 || mz > 1e6 {
+		return s.fail(at, fmt.Sprintf("m/z %q in the chromatogram %q", t.value, c.c.ID), "a decimal number from 0 (not stated) to 1000000", "")
+	}
+	slot := &c.selected
+	switch {
+	case t.accession == accSelected:
+	case of == "product":
+		slot = &c.c.Transition.ProductMZ
+	default:
+		slot = &c.c.Transition.PrecursorMZ
+	}
+	if *slot != 0 && *slot != mz {
+		return s.fail(at, fmt.Sprintf("the m/z %g and %g for one %s of the chromatogram %q", *slot, mz, of, c.c.ID), "one", "")
+	}
+	*slot = mz
+	return nil
+}
+
+// take decodes an array of the open chromatogram; those that are neither times nor intensities are left alone.
+func (r *reader) take(b *binaryArray) error {
+	c := r.chrom
+	slot := &c.intensity
 	switch b.content {
+	case accIntensity:
 	case accTime:
 		slot = &c.time
-	case accIntensity:
-		slot = &c.ints
 	default:
+		if name, known := auxiliaryArrays[b.content]; known {
+			c.auxiliary = name
+		}
 		return nil
 	}
 	if *slot != nil {
-		return s.fail(b.at, "a second array of one kind", "one time and one intensity array", "")
+		return r.s.fail(b.at, fmt.Sprintf("a second array of one kind in the chromatogram %q", c.c.ID), "one time and one intensity array", "")
 	}
-	v, err := b.decode(s, c.length)
+	v, err := b.decode(r, c.length)
 	if err != nil {
 		return err
 	}
@@ -89,19 +118,24 @@ func (c *chromatogram) take(s *scanner, b *binaryArray) error {
 
 func (r *reader) endChromatogram(c *chromatogram) error {
 	s := r.s
-	if c.time == nil || c.ints == nil {
-		if c.length == 0 {
-			r.file.Chromatograms = append(r.file.Chromatograms, c.c)
-			return nil
+	switch {
+	case c.intensity == nil && c.auxiliary != "":
+		r.file.Warnings = append(r.file.Warnings, trace.Warning{Code: "chromatogram-passed-over", Detail: fmt.Sprintf("%q records a %s, not a detector: it is not read", c.c.ID, c.auxiliary)})
+		return nil
+	case c.time != nil && c.intensity != nil:
+		c.c.TimeMin, c.c.Intensity = c.time.v, c.intensity.v
+	case c.length > 0 || c.time != nil || c.intensity != nil:
+		return s.fail(c.start, fmt.Sprintf("the chromatogram %q without its time or intensity array", c.c.ID), "both", cutHint)
+	}
+	if b := c.c.Check(); b != nil {
+		at := c.time.at
+		if b.InIntensity {
+			at = c.intensity.at
 		}
-		return s.fail(c.start, fmt.Sprintf("the chromatogram %q without a time or an intensity array", c.c.ID), "both", "")
+		return s.fail(at, fmt.Sprintf("%s at point %d of the chromatogram %q", b.Got, b.Point, c.c.ID), b.Want, exportHint)
 	}
-	c.c.TimeMin, c.c.Intensity = c.time.v, c.ints.v
-	if i, got, want := c.c.Check(); want != "" {
-		return s.fail(c.time.at, fmt.Sprintf("%s at point %d of the chromatogram %q", got, i+1, c.c.ID), want, "points must be in acquisition order and whole: export the run again")
-	}
-	if c.c.Kind == trace.SIM && c.c.Transition.ProductMZ > 0 {
-		c.c.Kind = trace.SRM
+	if c.c.Transition.PrecursorMZ == 0 {
+		c.c.Transition.PrecursorMZ = c.selected
 	}
 	r.file.Chromatograms = append(r.file.Chromatograms, c.c)
 	return nil

@@ -6,80 +6,126 @@ import (
 	"encoding/hex"
 	"fmt"
 	"strconv"
+	"strings"
 
 	"assaywrit/evidence/trace"
 )
 
 // An indexCheck compares what the index wrapper says with the file. Nothing relies on it.
 type indexCheck struct {
-	of       string // "spectrum" or "chromatogram": the index we are in
-	id       string // of the offset element we are in
-	inOffset bool
-	inSum    bool
-	sumEnd   int // just after the tag <fileChecksum>
-	sum      string
-	right    int
-	wrong    []string
+	present   bool
+	namespace string // of the wrapper
+
+	starts map[int]indexed // where spectra and chromatograms begin
+	list   int             // where the index begins
+
+	of, id, content string // index, offset and text that we are in
+	open            string
+	named           map[string]bool // chromatograms with an entry
+
+	right, wrong int
+	firstWrong   string
+	listOffset   string
+	sumEnd       int // just after the tag <fileChecksum>
+	sum          string
 }
 
-func (x *indexCheck) start(s *scanner, name string) {
+// indexed is an element that an index may point at.
+type indexed struct{ of, id string }
+
+func (x *indexCheck) start(s *scanner, name string, at int) {
+	if !x.present {
+		return
+	}
 	switch name {
+	case "spectrum", "chromatogram":
+		if x.starts == nil {
+			x.starts = map[int]indexed{}
+		}
+		x.starts[at] = indexed{name, s.attr("id")}
+	case "indexList":
+		x.list = at
 	case "index":
 		x.of = s.attr("name")
 	case "offset":
-		x.id, x.inOffset = s.attr("idRef"), x.of != ""
-	case "fileChecksum":
-		x.inSum, x.sumEnd = true, s.at
+		x.open, x.content, x.id = name, "", s.attr("idRef")
+	case "indexListOffset", "fileChecksum":
+		x.open, x.content = name, ""
+		if name == "fileChecksum" {
+			x.sumEnd = s.at
+		}
+	}
+}
+
+func (x *indexCheck) text(text []byte) {
+	if x.open != "" {
+		x.content = string(bytes.TrimSpace(text))
 	}
 }
 
 func (x *indexCheck) end(name string) {
+	if name != x.open || name == "" {
+		return
+	}
+	x.open = ""
 	switch name {
-	case "index":
-		x.of = ""
-	case "offset":
-		x.inOffset = false
+	case "indexListOffset":
+		x.listOffset = x.content
 	case "fileChecksum":
-		x.inSum = false
-	}
-}
-
-func (x *indexCheck) text(s *scanner, text []byte) {
-	switch {
-	case x.inSum:
-		x.sum = string(bytes.TrimSpace(text))
-	case x.inOffset:
-		at, err := strconv.Atoi(string(bytes.TrimSpace(text)))
-		if err == nil && pointsAt(s.data, at, x.of, x.id) {
+		x.sum = x.content
+	case "offset":
+		if x.of == "chromatogram" {
+			if x.named == nil {
+				x.named = map[string]bool{}
+			}
+			x.named[x.id] = true
+		}
+		at, err := strconv.Atoi(x.content)
+		if there, begins := x.starts[at]; err == nil && begins && there == (indexed{x.of, x.id}) {
 			x.right++
-		} else {
-			x.wrong = append(x.wrong, x.id)
+			return
+		}
+		if x.wrong++; x.wrong == 1 {
+			x.firstWrong = x.id
 		}
 	}
 }
 
-// pointsAt tells whether an element of that name and id begins at an offset.
-func pointsAt(data []byte, at int, name, id string) bool {
-	if at < 0 || at >= len(data) || !bytes.HasPrefix(data[at:], []byte("<"+name)) {
-		return false
+// warnings says what does not hold, each kind once.
+func (x *indexCheck) warnings(s *scanner, chromatograms []string) []trace.Warning {
+	if !x.present {
+		return nil
 	}
-	sub := &scanner{data: data, at: at}
-	if _, _, _, err := sub.next(); err != nil {
-		return false
-	}
-	return sub.attr("id") == id
-}
-
-func (x *indexCheck) warnings(s *scanner) []trace.Warning {
 	var list []trace.Warning
-	if len(x.wrong) > 0 {
-		list = append(list, trace.Warning{Code: "index-offset", Detail: fmt.Sprintf("%d of %d offsets of the index do not point at their element, the first that of %q", len(x.wrong), len(x.wrong)+x.right, x.wrong[0])})
+	offset := func(format string, args ...any) {
+		list = append(list, trace.Warning{Code: "index-offset", Detail: fmt.Sprintf(format, args...)})
 	}
-	if x.sumEnd > 0 {
-		sum := sha1.Sum(s.data[:x.sumEnd])
-		if got := hex.EncodeToString(sum[:]); got != x.sum {
-			list = append(list, trace.Warning{Code: "file-checksum", Detail: fmt.Sprintf("the file's SHA-1 is %s, it says %q", got, x.sum)})
+	if x.wrong > 0 {
+		offset("%d of %d offsets of the index do not point at their element, the first of them that of %q", x.wrong, x.wrong+x.right, x.firstWrong)
+	}
+	missing, first := 0, ""
+	for _, id := range chromatograms {
+		if !x.named[id] {
+			if missing++; missing == 1 {
+				first = id
+			}
 		}
+	}
+	if missing > 0 {
+		offset("%d of %d chromatograms are not in the index, the first of them %q", missing, len(chromatograms), first)
+	}
+	switch {
+	case x.list == 0:
+		offset("the file has an index wrapper and no index")
+	case x.listOffset != strconv.Itoa(x.list):
+		offset("the index begins at byte %d, the file says %q", x.list, x.listOffset)
+	}
+	if x.sumEnd == 0 {
+		return append(list, trace.Warning{Code: "file-checksum", Detail: "the file has an index wrapper and no checksum"})
+	}
+	sum := sha1.Sum(s.data[:x.sumEnd])
+	if got := hex.EncodeToString(sum[:]); !strings.EqualFold(got, x.sum) {
+		list = append(list, trace.Warning{Code: "file-checksum", Detail: fmt.Sprintf("the SHA-1 of the file is %s, it says %q", got, x.sum)})
 	}
 	return list
 }
