@@ -4,12 +4,16 @@
 // fractions. The decimal text is scaled by powers of ten (and by 60) before it becomes binary, so "1.2 ug/mL" is exactly 1200 and
 // every result is the double nearest to what was written. A quantity without a unit is refused, and so is one of another
 // family: ng/mL cannot be taken for ug/mL.
+//
+// Numbers are plain decimals: an optional sign, digits, and a point with digits on both of its sides (a naked ".5" is easily
+// read as 5), and an optional exponent of ten. No other base, no leading zeros, no separators of thousands, no decimal comma.
+// Symbols follow the SI and are case-sensitive, except that the litre is taken as l or L (The International System of Units, 9th
+// ed., table 8: both are its symbols); micro is u, µ (U+00B5) or μ (U+03BC). A fraction is written in per cent, or below 1 as a bare
+// number that begins with 0: a bare "1" could be meant as 1 % or as the whole and is refused.
 package units
 
 import (
 	"fmt"
-	"math"
-	"math/big"
 	"regexp"
 	"strings"
 )
@@ -20,7 +24,7 @@ type Family struct {
 	example string // "150 ng/mL"
 	base    string
 	units   []unit // in the order in which they are offered
-	bare    bool   // a number without a unit is accepted
+	bare    bool   // a number below 1 without a unit is accepted
 }
 
 // unit: one of it is num/den · 10^exp of the base unit.
@@ -30,7 +34,7 @@ type unit struct {
 	exp      int
 }
 
-// The families. Symbols follow the SI and are case-sensitive, except that the litre is taken as l or L (both are SI symbols).
+// The families.
 var (
 	Time = Family{"a time", "2.31 min", "min", []unit{{"min", 1, 1, 0}, {"s", 1, 60, 0}, {"h", 60, 1, 0}}, false}
 
@@ -54,67 +58,29 @@ func ForTag(tag string) (Family, bool) {
 	return f, ok
 }
 
-var (
-	number   = regexp.MustCompile(`^[+-]?(\d+(\.\d*)?|\.\d+)([eE][+-]?\d{1,3})?$`)
-	quantity = regexp.MustCompile(`^([+-]?[0-9.][0-9.,]*(?:[eE][+-]?\d{1,3})?)\s*(.*)$`)
-)
+// Base is the symbol of the base unit.
+func (f Family) Base() string { return f.base }
 
-// Want says what the family accepts, for an error message.
-func (f Family) Want() string {
-	names := make([]string, 0, len(f.units))
-	for _, u := range f.units {
-		names = append(names, u.symbol)
-	}
-	if f.bare {
-		return fmt.Sprintf("%s such as %q or a plain number", f.name, f.example)
-	}
-	return fmt.Sprintf("%s such as %q (units: %s)", f.name, f.example, strings.Join(names, ", "))
+// Bare tells whether a number without a unit is accepted.
+func (f Family) Bare() bool { return f.bare }
+
+// Example is a quantity of the family.
+func (f Family) Example() string { return f.example }
+
+// Has tells whether the family has a unit of this symbol.
+func (f Family) Has(symbol string) bool {
+	_, ok := f.unit(symbol)
+	return ok
 }
 
-// Pattern is a regular expression (ECMA 262) for what the family accepts.
-func (f Family) Pattern() string {
-	names := make([]string, 0, len(f.units))
-	for _, u := range f.units {
-		name := regexp.QuoteMeta(u.symbol)
-		if strings.HasPrefix(u.symbol, "u") {
-			name = "[uµμ]" + name[1:]
-		}
-		names = append(names, strings.ReplaceAll(strings.ReplaceAll(name, "L", "[lL]"), "/", `\/`))
-	}
-	tail := `(` + strings.Join(names, "|") + `)`
-	if f.bare {
-		tail += "?"
-	}
-	return `^[+-]?(\d+(\.\d*)?|\.\d+)([eE][+-]?\d{1,3})?\s*` + strings.ReplaceAll(tail, `\/`, "/") + `$`
-}
-
-// Parse reads a quantity into the family's base unit. The error says what was found and what would be accepted.
-func (f Family) Parse(text string) (float64, error) {
-	value, symbol, ok := split(text)
-	if !ok {
-		return 0, fmt.Errorf("got %q, want %s", text, f.Want())
-	}
-	if strings.Contains(value, ",") {
-		return 0, fmt.Errorf("got %q, want %s, with a decimal point", text, f.Want())
-	}
-	if symbol == "" && f.bare {
-		return ParseNumber(value)
-	}
+func (f Family) unit(symbol string) (unit, bool) {
+	symbol = Symbol(symbol)
 	for _, u := range f.units {
 		if u.symbol == symbol {
-			return scale(value, u)
+			return u, true
 		}
 	}
-	return 0, fmt.Errorf("got %q, want %s", text, f.Want())
-}
-
-// split takes a quantity apart; the symbol comes with "u" for both micro signs and "L" for the litre.
-func split(text string) (value, symbol string, ok bool) {
-	m := quantity.FindStringSubmatch(strings.TrimSpace(text))
-	if m == nil {
-		return "", "", false
-	}
-	return m[1], Symbol(m[2]), true
+	return unit{}, false
 }
 
 // Symbol writes a unit with "u" for both micro signs and "L" for the litre.
@@ -123,80 +89,91 @@ func Symbol(s string) string {
 	parts := strings.Split(s, "/")
 	for i, p := range parts {
 		switch p {
-		case "l", "ml", "ul", "nl", "dl":
+		case "l", "ml", "ul", "nl":
 			parts[i] = p[:len(p)-1] + "L"
 		}
 	}
 	return strings.Join(parts, "/")
 }
 
-// Has tells whether the family has a unit of this symbol.
-func (f Family) Has(symbol string) bool {
+// Want says what the family accepts, for an error message.
+func (f Family) Want() string {
+	if f.bare {
+		return fmt.Sprintf("%s such as %q or %q", f.name, f.example, "0.15")
+	}
+	names := make([]string, 0, len(f.units))
 	for _, u := range f.units {
-		if u.symbol == Symbol(symbol) {
-			return true
-		}
+		names = append(names, u.symbol)
 	}
-	return false
+	return fmt.Sprintf("%s such as %q (units: %s)", f.name, f.example, strings.Join(names, ", "))
 }
 
-// ParseIn reads a plain decimal number that is in the given unit of the family.
-func (f Family) ParseIn(text, symbol string) (float64, error) {
+// The grammar, in what Go's regular expressions and those of ECMA 262 have in common.
+const (
+	numberPattern = `[+-]?(0|[1-9]\d*)(\.\d+)?([eE][+-]?\d{1,3})?`
+	barePattern   = `[+-]?0(\.\d+)?`
+	gapPattern    = `[ \u00a0\u2009\u202f]*` // blanks, thin and unbreakable ones too
+)
+
+// Pattern is a regular expression (ECMA 262) for the texts that the family accepts.
+func (f Family) Pattern() string {
+	names := make([]string, 0, len(f.units))
 	for _, u := range f.units {
-		if u.symbol == Symbol(symbol) {
-			return scale(text, u)
+		name := u.symbol
+		if strings.HasPrefix(name, "u") {
+			name = "[uµμ]" + name[1:]
+		}
+		names = append(names, strings.ReplaceAll(name, "L", "[lL]"))
+	}
+	all := numberPattern + gapPattern + "(" + strings.Join(names, "|") + ")"
+	if f.bare {
+		all = "(" + barePattern + "|" + all + ")"
+	}
+	return "^" + strings.NewReplacer(`\u00a0`, "\u00a0", `\u2009`, "\u2009", `\u202f`, "\u202f").Replace(all) + "$"
+}
+
+var (
+	number   = regexp.MustCompile("^" + numberPattern + "$")
+	bare     = regexp.MustCompile("^" + barePattern + "$")
+	quantity = regexp.MustCompile(`^([+-]?[0-9.,]*[0-9.](?:[eE][+-]?\d+)?)[ \x{00a0}\x{2009}\x{202f}]*(.*)$`)
+)
+
+// Hint says what is wrong with a text that Parse refuses, or nothing where that is not clear.
+func (f Family) Hint(text string) string {
+	if m := quantity.FindStringSubmatch(strings.TrimSpace(text)); m != nil {
+		symbol := Symbol(m[2])
+		_, known := f.unit(symbol)
+		switch {
+		case strings.Contains(m[1], ","):
+			return "write a decimal point, and no separators of thousands"
+		case !number.MatchString(m[1]) && (known || f.bare):
+			return NumberHint(m[1])
+		case symbol == "" && f.bare:
+			return fmt.Sprintf("write %s %% if that is meant, or 0.… below 1", m[1])
+		case symbol == "":
+			return fmt.Sprintf("write the unit after the number, such as %s %s", m[1], f.units[0].symbol)
+		}
+		for _, u := range f.units {
+			if strings.EqualFold(u.symbol, symbol) {
+				return fmt.Sprintf("capital and small letters differ in units: write %s if that is meant", u.symbol)
+			}
 		}
 	}
-	return 0, fmt.Errorf("got unit %q, want %s", symbol, f.Want())
+	return ""
 }
 
-// ParseNumber reads a plain decimal number: no other base, no underscores, no infinity.
-func ParseNumber(text string) (float64, error) { return scale(text, unit{"", 1, 1, 0}) }
-
-// scale is text·num/den·10^exp, rounded once.
-func scale(text string, u unit) (float64, error) {
-	if !number.MatchString(text) {
-		return 0, fmt.Errorf("got %q, want a decimal number such as 12.5", text)
+// NumberHint says what is wrong with a text that ParseNumber refuses, or nothing where that is not clear.
+func NumberHint(text string) string {
+	digits := strings.TrimLeft(text, "+-")
+	switch {
+	case strings.Contains(text, ","):
+		return "write a decimal point, and no separators of thousands"
+	case strings.HasPrefix(digits, "."):
+		return "write a zero before the decimal point"
+	case strings.HasSuffix(digits, "."):
+		return "write a digit after the decimal point, or leave the point out"
+	case len(digits) > 1 && digits[0] == '0' && digits[1] >= '0' && digits[1] <= '9':
+		return "leave out the zeros in front"
 	}
-	r, ok := new(big.Rat).SetString(strings.TrimSuffix(text, "."))
-	if !ok {
-		return 0, fmt.Errorf("got %q, want a decimal number such as 12.5", text)
-	}
-	v, _ := r.Mul(r, ratio(u)).Float64()
-	if math.IsInf(v, 0) {
-		return 0, fmt.Errorf("got %q, want a number within the range of a double", text)
-	}
-	return v, nil
+	return ""
 }
-
-func ratio(u unit) *big.Rat {
-	r := big.NewRat(u.num, u.den)
-	ten := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(max(u.exp, -u.exp))), nil)
-	if u.exp < 0 {
-		return r.Quo(r, new(big.Rat).SetInt(ten))
-	}
-	return r.Mul(r, new(big.Rat).SetInt(ten))
-}
-
-// In converts a value in the family's base unit into another of its units, for people; the shortest decimal of the value is
-// scaled, so that 1200 ng/mL is 1.2 ug/mL.
-func (f Family) In(value float64, symbol string) (float64, error) {
-	for _, u := range f.units {
-		if u.symbol != Symbol(symbol) {
-			continue
-		}
-		r, ok := new(big.Rat).SetString(fmt.Sprintf("%v", value))
-		if !ok {
-			return 0, fmt.Errorf("%v cannot be converted", value)
-		}
-		v, _ := r.Quo(r, ratio(u)).Float64()
-		return v, nil
-	}
-	return 0, fmt.Errorf("got unit %q, want %s", symbol, f.Want())
-}
-
-// Base is the symbol of the base unit.
-func (f Family) Base() string { return f.base }
-
-// Bare tells whether a number without a unit is accepted.
-func (f Family) Bare() bool { return f.bare }
