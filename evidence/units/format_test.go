@@ -19,7 +19,7 @@ func TestFormat(t *testing.T) {
 		{Concentration, 1200, "µg/ml", "1.2 ug/mL"},
 		{Concentration, 1200, "ng/mL", "1200 ng/mL"},
 		{Concentration, 0.15, "pg/mL", "150 pg/mL"},
-		{Concentration, 0.3, "ug/mL", "0.0003 ug/mL"}, // 0.3/1000 in binary is 0.00029999999999999997
+		{Concentration, 2.1, "ug/mL", "0.0021 ug/mL"}, // the quotient of doubles 2.1/1000 is 0.0021000000000000003
 		{Concentration, -40, "ng/mL", "-40 ng/mL"},
 		{Concentration, 0, "ng/mL", "0 ng/mL"},
 		{Concentration, 1e30, "ng/mL", "1e30 ng/mL"},

@@ -30,8 +30,8 @@ func TestParse(t *testing.T) {
 		{Concentration, "500 pg/mL", 0.5},
 		{Concentration, "500 ng/L", 0.5},
 		{Concentration, "1e-3 mg/mL", 1000},
-		{Concentration, "1.001 ug/mL", 1001}, // the product of doubles 1.001·1000 is 1000.9999999999999
-		{Concentration, "0.0003 mg/mL", 300}, // 0.0003·1e6 is 299.99999999999994
+		{Concentration, "1.001 ug/mL", 1001},  // the product of doubles 1.001·1000 is 1000.9999999999999
+		{Concentration, "0.0079 mg/mL", 7900}, // 0.0079·1e6 is 7900.000000000001
 		{Concentration, "150\u00a0ng/mL", 150},
 		{Concentration, " 150  ng/mL ", 150},
 		{Concentration, "+150 ng/mL", 150},
