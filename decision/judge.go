@@ -126,7 +126,7 @@ func (c Check) atLeast(v *float64, limit float64, show func(float64) *Figure, wh
 	return c
 }
 
-func count(v float64) *Figure   { return figure(v, "", 6) }
+func count(v float64) *Figure   { return figure(v, "", 12) }
 func ratio(v float64) *Figure   { return figure(v, "", 3) }
 func minutes(v float64) *Figure { return &Figure{Value: v, Unit: "min", Text: fixed(v, 3) + " min"} }
 

@@ -52,10 +52,14 @@ func roundValue(v float64, rule string, digits int) float64 {
 	return out
 }
 
-// Text writes v for people with a number of significant digits, rounded half to even, without an exponent from 0.0001 to 10^9.
+// Text writes v for people with at most a number of significant digits, rounded half to even, without an exponent from 0.0001 to
+// 10^9. A value that has fewer digits is written as it is: 5, not 5.00.
 func Text(v float64, digits int) string {
 	if v == 0 {
 		return "0"
+	}
+	if short := strconv.FormatFloat(v, 'f', -1, 64); len(strings.Trim(strings.Replace(strings.TrimLeft(short, "-0."), ".", "", 1), "0")) < digits && math.Abs(v) >= 1e-4 && math.Abs(v) < 1e9 {
+		return short
 	}
 	r := roundValue(v, "half-even", digits)
 	if a := math.Abs(r); a < 1e-4 || a >= 1e9 {

@@ -40,7 +40,7 @@ func (d *document) traceChart(inj *evidence.Injection, m *evidence.Measurement, 
 	low, high := extent(ys)
 	pt, py := thinned(ts, ys)
 	p := newPlot()
-	axes(p, from, to, low-(high-low)*0.04, high+(high-low)*0.10, 4, 3)
+	axes(p, from, to, low-(high-low)*0.04, high+(high-low)*0.10, 5, 5)
 	p.Add(traceLayer{ts, ys, pt, py, m}.layer())
 	d.drawPlot(p, x-1, y+6.6, w, h-6.6)
 	if len(pt) < len(ts) {

@@ -23,7 +23,7 @@ func Finding(w io.Writer, in Input) (int, error) {
 	d.pairs([][2]string{
 		{"Case, laboratory", c.Number + ", " + c.Laboratory.Name + " (" + c.Laboratory.Code + ")"},
 		{"For", c.Customer.Name},
-		{"Collected, received", c.Sample.CollectedAt + ", " + c.Sample.ReceivedAt},
+		{"Collected, received", when(c.Sample.CollectedAt) + ", " + when(c.Sample.ReceivedAt)},
 	})
 	d.part(words.get("asked"))
 	d.paragraph(c.Request.Text + testType(c.Request.TestType, c.Request.Activity))

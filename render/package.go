@@ -16,10 +16,25 @@ func Package(w io.Writer, in Input) (int, error) {
 	if err != nil {
 		return 0, err
 	}
-	d := newDocument(in, words, words.get("package-title"))
+	pages := contentsPages(3*len(in.Record.Analytes)*3 + 2*len(in.Record.Injections) + 20) // a guess that is seldom off
+	for {
+		d := newDocument(in, words, words.get("package-title"))
+		need := d.lay(pages)
+		if need == pages {
+			return d.finish(w)
+		}
+		pages = need
+	}
+}
+
+// lay sets the whole document with so many pages for the contents, and returns how many they need.
+func (d *document) lay(pages int) int {
+	in := d.in
 	d.cover()
-	d.newPage()
-	contents := d.pdf.PageNo()
+	contents := d.pdf.PageNo() + 1
+	for range pages {
+		d.newPage()
+	}
 	d.summary()
 	d.requestAndCustody()
 	d.methodAndCriteria()
@@ -32,8 +47,31 @@ func Package(w io.Writer, in Input) (int, error) {
 	d.chromatograms()
 	d.filesAndChecking()
 	d.glossary()
-	d.contents(contents)
-	return d.finish(w)
+	need := contentsPages(d.tocUnits())
+	if need == pages {
+		d.contents(contents)
+	}
+	return need
+}
+
+// The contents are measured in units of half a line of a subheading.
+const unitsPerPage = 110
+
+func contentsPages(units int) int { return max(1, (units+unitsPerPage-1)/unitsPerPage) }
+
+func (d *document) tocUnits() int {
+	n := 0
+	for _, e := range d.toc {
+		n += tocStep(e)
+	}
+	return n
+}
+
+func tocStep(e tocEntry) int {
+	if e.level == 0 {
+		return 3
+	}
+	return 2
 }
 
 func (d *document) cover() {
@@ -55,7 +93,7 @@ func (d *document) cover() {
 		{"For", c.Customer.Name},
 		{"Contact", c.Customer.Contact},
 		{"Their reference", c.Customer.Reference},
-		{"Collected, received", c.Sample.CollectedAt + ", " + c.Sample.ReceivedAt},
+		{"Collected, received", when(c.Sample.CollectedAt) + ", " + when(c.Sample.ReceivedAt)},
 		{"Batch acquired", span(d.in.Record)},
 		{"Criteria", d.in.Finding.Criteria.ID + ", " + d.in.Finding.Criteria.Edition},
 		{"Replaces", supersedes(c)},
@@ -78,7 +116,7 @@ func span(rec *evidence.Record) string {
 	if len(rec.Sequence) == 0 {
 		return ""
 	}
-	return rec.Sequence[0].AcquiredAt + " to " + rec.Sequence[len(rec.Sequence)-1].AcquiredAt
+	return when(rec.Sequence[0].AcquiredAt) + " to " + when(rec.Sequence[len(rec.Sequence)-1].AcquiredAt)
 }
 
 func supersedes(c casefile.Case) string {
@@ -97,34 +135,40 @@ func position(c casefile.Case, code string) string {
 	return ""
 }
 
-// contents fills the page that was left for it.
+// contents fills the pages that were left for it.
 func (d *document) contents(page int) {
-	d.pdf.SetPage(page)
-	d.font("", 6)
-	d.font("B", sizeH1)
-	d.color(ink)
-	y := top + 6
-	d.put(left, y, "Contents")
-	y += 9
+	const unit = 2.12 // mm
+	used := unitsPerPage
+	y := 0.0
 	for _, e := range d.toc {
+		step := tocStep(e)
+		if used+step > unitsPerPage {
+			d.pdf.SetPage(page)
+			page++
+			d.font("", 6)
+			d.font("B", sizeH1)
+			d.color(ink)
+			y = top + 6
+			d.put(left, y, "Contents")
+			y += 5
+			used = 0
+		}
+		used += step
+		y += float64(step) * unit
 		size, indent, style := sizeBody, 0.0, "B"
-		step := 5.6
 		if e.level > 0 {
-			size, indent, style, step = 8.5, 5, "", 4.3
+			size, indent, style = 8.5, 5, ""
 		}
-		if y > pageH-bottom-4 {
-			break
-		}
+		d.color(ink)
 		d.font(style, size)
 		d.put(left+indent, y, e.text)
+		end := left + indent + d.width(e.text) + 2
 		d.font("", size)
 		d.putRight(pageW-right, y, fmt.Sprint(e.page))
-		end := left + indent + d.width(e.text) + 6
 		d.pdf.SetDashPattern([]float64{0.3, 1.2}, 0)
 		d.line(end, y-0.4, pageW-right-8, y-0.4, rule, 0.25)
 		d.pdf.SetDashPattern(nil, 0)
-		d.pdf.Link(left, y-step+1, textW, step, e.link)
-		y += step
+		d.pdf.Link(left, y-3.5, textW, float64(step)*unit, e.link)
 	}
 }
 
@@ -208,8 +252,8 @@ func (d *document) requestAndCustody() {
 		{"Substances", strings.Join(c.Request.Analytes, ", ")},
 		{"Container", c.Sample.Container},
 		{"Matrix", c.Sample.Matrix},
-		{"Collected", c.Sample.CollectedAt},
-		{"Received", c.Sample.ReceivedAt},
+		{"Collected", when(c.Sample.CollectedAt)},
+		{"Received", when(c.Sample.ReceivedAt)},
 		{"Condition at receipt", c.Sample.Condition},
 		{"Irregularities", orNone(strings.Join(c.Sample.Irregularities, "; "))},
 		{"Volume", unit(c.Sample.VolumeML, "mL")},
@@ -221,7 +265,7 @@ func (d *document) requestAndCustody() {
 	d.heading(1, "custody", d.words.get("custody-title"))
 	var rows [][]string
 	for _, e := range c.Custody {
-		rows = append(rows, []string{e.At, e.Item, e.Event, e.From, e.To, e.Location, joined(e.Seal, e.Note)})
+		rows = append(rows, []string{when(e.At), e.Item, e.Event, e.From, e.To, e.Location, joined(e.Seal, e.Note)})
 	}
 	d.table(table{columns: []column{{head: "Time", share: 2.5}, {head: "Item", share: 1.5}, {head: "Event", share: 2.3}, {head: "From", share: 0.8}, {head: "To", share: 0.8}, {head: "Place", share: 2.2}, {head: "Seal, note", share: 2.2}}, rows: rows})
 	d.heading(1, "people", d.words.get("people-title"))
@@ -232,7 +276,7 @@ func (d *document) requestAndCustody() {
 	d.table(table{columns: []column{{head: "Code", share: 1}, {head: "Name", share: 2}, {head: "Position", share: 3}, {head: "In this case", share: 5}}, rows: rows})
 	d.heading(1, "initial", d.words.get("initial-title"))
 	if t := c.InitialTest; t != nil {
-		d.pairs([][2]string{{"Time", t.At}, {"Method", t.Method}, {"Aliquot", t.Aliquot}, {"By", t.By}, {"Result", t.Result}})
+		d.pairs([][2]string{{"Time", when(t.At)}, {"Method", t.Method}, {"Aliquot", t.Aliquot}, {"By", t.By}, {"Result", t.Result}})
 	} else {
 		d.paragraph(d.words.get("initial-none"))
 	}
@@ -299,7 +343,7 @@ func unit(v *float64, u string) string {
 	if v == nil {
 		return "not stated"
 	}
-	return strings.TrimSpace(number(*v, 4) + " " + u)
+	return strings.TrimSpace(plain(*v) + " " + u)
 }
 
 func gravity(v *float64) string {

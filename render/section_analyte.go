@@ -156,7 +156,11 @@ func signedPercent(v *float64) string {
 	if v == nil {
 		return "–"
 	}
-	return fmt.Sprintf("%+.2f %%", *v*100)
+	text := fmt.Sprintf("%+.2f %%", *v*100)
+	if text == "-0.00 %" || text == "+0.00 %" {
+		return "0.00 %"
+	}
+	return text
 }
 
 func withU(v, u *float64) string {
@@ -178,15 +182,15 @@ func (d *document) calibration(k int) {
 		{"Covariance of a and b", number(fit.Cov, 4)},
 		{"Residual standard deviation", fmt.Sprintf("%s (of a response of weight 1), %d degrees of freedom", number(fit.S, 4), fit.DoF)},
 		{"Correlation r, r²", fmt.Sprintf("%.6f, %.6f", fit.R, fit.R2)},
-		{"Calibrated range", fmt.Sprintf("%s to %s ng/mL", number(a.Calibration.LowNGPerML, 5), number(a.Calibration.HighNGPerML, 5))},
+		{"Calibrated range", fmt.Sprintf("%s to %s ng/mL", plain(a.Calibration.LowNGPerML), plain(a.Calibration.HighNGPerML))},
 	})
 	d.calibrationCharts(k)
 	var rows [][]string
 	for i, p := range fit.Points {
-		rows = append(rows, []string{a.Calibration.Injections[i], a.Calibration.Levels[i], number(p.X, 5), number(p.Y, 5), number(p.Fitted, 5), number(p.Weight, 4), number(p.BackX, 5), percentage(p.RelativeBias, 3), d.resultOf(a.ID + "/calibrator/" + a.Calibration.Injections[i])})
+		rows = append(rows, []string{a.Calibration.Injections[i], a.Calibration.Levels[i], plain(p.X), number(p.Y, 5), number(p.Fitted, 5), number(p.Weight, 4), number(p.BackX, 5), percentage(p.RelativeBias, 3), d.resultOf(a.ID + "/calibrator/" + a.Calibration.Injections[i])})
 	}
 	d.table(table{columns: []column{{head: "No.", share: 0.7}, {head: "Level", share: 0.8}, {head: "Nominal, ng/mL", share: 1.2, right: true}, {head: "Response", share: 1.2, right: true}, {head: "Fitted", share: 1.2, right: true}, {head: "Weight", share: 1.2, right: true},
-		{head: "Back-calculated, ng/mL", share: 1.5, right: true}, {head: "less nominal", share: 1.1, right: true}, {head: "Result", share: 1.2}}, rows: rows})
+		{head: "Back-calculated, ng/mL", share: 1.8, right: true}, {head: "less nominal", share: 1.1, right: true}, {head: "Result", share: 1.2}}, rows: rows})
 	d.note(d.words.get("calibration-note"))
 }
 
@@ -247,7 +251,7 @@ func (d *document) quantity(k int) {
 		if c.InRange != nil {
 			in = map[bool]string{true: "yes", false: "no"}[*c.InRange]
 		}
-		rows = append(rows, []string{c.Aliquot + " (" + c.Injection + ")", optional(c.Response, 5), optional(c.ReadNGPerML, 5), optional(c.StdU, 2), in, number(c.Dilution, 3), optional(c.NGPerML, 5), c.Missing})
+		rows = append(rows, []string{c.Aliquot + " (" + c.Injection + ")", optional(c.Response, 5), optional(c.ReadNGPerML, 5), optional(c.StdU, 2), in, plain(c.Dilution), optional(c.NGPerML, 5), c.Missing})
 	}
 	d.table(table{columns: []column{{head: "Aliquot", share: 1.3}, {head: "Response", share: 1.2, right: true}, {head: "Read, ng/mL", share: 1.2, right: true}, {head: "u of reading, ng/mL", share: 1.4, right: true}, {head: "In range", share: 0.9}, {head: "Dilution", share: 0.9, right: true}, {head: "Sample, ng/mL", share: 1.3, right: true}, {head: "Note", share: 2}}, rows: rows})
 	r := a.Result
@@ -282,7 +286,7 @@ func (d *document) budget(k int) {
 		dof = number(*b.EffectiveDoF, 4)
 	}
 	rows = append(rows, []string{"combined (" + b.Algorithm + ")", "", number(b.StdU, 3), "", dof, "100 %", ""})
-	d.table(table{columns: []column{{head: "Component", share: 3}, {head: "Type", share: 0.6}, {head: "u, ng/mL", share: 1, right: true}, {head: "Sensitivity", share: 1, right: true}, {head: "Degrees of freedom", share: 1.1, right: true}, {head: "Share of variance", share: 1.1, right: true}, {head: "Source", share: 3.4}},
+	d.table(table{columns: []column{{head: "Component", share: 3}, {head: "Type", share: 0.8}, {head: "u, ng/mL", share: 1, right: true}, {head: "Sensitivity", share: 1.3, right: true}, {head: "Degrees of freedom", share: 1.1, right: true}, {head: "Share of variance", share: 1.1, right: true}, {head: "Source", share: 3.4}},
 		rows: rows, bold: map[int]bool{len(rows) - 1: true}})
 	d.budgetBars(k)
 	d.note(d.words.get("budget-note"))

@@ -8,15 +8,15 @@ func (d *document) batch() {
 	rec := d.in.Record
 	d.chapter("batch", d.words.get("batch-title"))
 	d.paragraph(d.words.get("batch-intro"))
-	columns := []column{{head: "No.", share: 0.7}, {head: "Role", share: 2}, {head: "Level, aliquot", share: 1.3}, {head: "Dilution", share: 1, right: true}, {head: "Acquired", share: 2.9}, {head: "By", share: 0.7}}
+	columns := []column{{head: "No.", share: 0.8}, {head: "Role", share: 2}, {head: "Level, aliquot", share: 1.1}, {head: "Dilution", share: 1.2, right: true}, {head: "Acquired", share: 3}, {head: "By", share: 0.9}}
 	for _, a := range rec.Analytes {
-		columns = append(columns, column{head: a.Name, share: 1.3, right: true})
+		columns = append(columns, column{head: a.Name, share: 1.6, right: true})
 	}
-	columns = append(columns, column{head: "Note", share: 2.2})
+	columns = append(columns, column{head: "Note", share: 2})
 	var rows [][]string
 	var links []string
 	for _, r := range rec.Sequence {
-		row := []string{r.ID, string(r.Role), r.Level + r.Aliquot, number(r.Dilution, 3), r.AcquiredAt, r.Operator}
+		row := []string{r.ID, string(r.Role), r.Level + r.Aliquot, plain(r.Dilution), when(r.AcquiredAt), r.Operator}
 		for _, a := range rec.Analytes {
 			row = append(row, nominalText(r, a.ID))
 		}
@@ -30,7 +30,7 @@ func (d *document) batch() {
 func nominalText(r casefile.Injection, analyte string) string {
 	for _, n := range r.Nominal {
 		if n.Analyte == analyte {
-			return number(n.NGPerML, 5)
+			return plain(n.NGPerML)
 		}
 	}
 	return ""
@@ -48,7 +48,7 @@ func (d *document) rawFiles() {
 				warnings = joined(warnings, w.Code+": "+w.Detail)
 			}
 		}
-		rows = append(rows, []string{inj.ID, inj.File, inj.Format, inj.StartTime, inj.SampleCode, warnings, d.hashOf("data/inputs/case/" + inj.File)})
+		rows = append(rows, []string{inj.ID, inj.File, inj.Format, when(inj.StartTime), inj.SampleCode, warnings, d.hashOf("data/inputs/case/" + inj.File)})
 	}
 	d.table(table{columns: []column{{head: "No.", share: 0.7}, {head: "File", share: 1.8}, {head: "Format", share: 1.4}, {head: "Start, as the file says", share: 2.8}, {head: "Sample, as the file says", share: 2}, {head: "Warnings", share: 1.6}, {head: "SHA-256", share: 1.7, mono: true}}, rows: rows, size: 7.2})
 }
@@ -124,7 +124,7 @@ func (d *document) controls(k int) {
 	d.heading(1, "controls/"+a.ID, d.words.get("controls-title"))
 	var rows [][]string
 	for _, c := range a.Controls {
-		rows = append(rows, []string{c.Injection, c.Level, optional(c.NominalNGPerML, 5), optional(c.NGPerML, 4), percentage(c.Bias, 3), d.resultOf(a.ID + "/control/" + c.Injection), c.Missing})
+		rows = append(rows, []string{c.Injection, c.Level, optional(c.NominalNGPerML, 12), optional(c.NGPerML, 4), percentage(c.Bias, 3), d.resultOf(a.ID + "/control/" + c.Injection), c.Missing})
 	}
 	d.table(table{columns: []column{{head: "No.", share: 0.8}, {head: "Level", share: 1}, {head: "Nominal, ng/mL", share: 1.4, right: true}, {head: "Found, ng/mL", share: 1.4, right: true}, {head: "Found less nominal", share: 1.5, right: true}, {head: "Result", share: 1.2}, {head: "Note", share: 2}}, rows: rows})
 }

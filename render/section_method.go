@@ -48,7 +48,7 @@ func given(v *float64, u string) string {
 	if v == nil {
 		return ""
 	}
-	return number(*v, 4) + " " + u
+	return plain(*v) + " " + u
 }
 
 func (d *document) transitions(m casefile.Method) {
@@ -82,15 +82,15 @@ func (d *document) parameters(m casefile.Method) {
 	for _, r := range m.Identification.ReferenceRoles {
 		refs = append(refs, string(r))
 	}
-	pc := func(v float64) string { return number(v*100, 3) + " %" }
+	pc := statedPercent
 	rows := [][]string{
 		{"Smoothing, for detection only", fmt.Sprintf("%d points", p.SmoothingPoints)},
-		{"Smallest signal-to-noise of a peak", number(p.MinSN, 3)},
-		{"Narrowest width at half height", number(p.MinWidthMin, 3) + " min"},
-		{"Shared valleys", fmt.Sprintf("%s, valley fraction %s", p.Shared, number(p.ValleyFraction, 3))},
+		{"Smallest signal-to-noise of a peak", plain(p.MinSN)},
+		{"Narrowest width at half height", plain(p.MinWidthMin) + " min"},
+		{"Shared valleys", fmt.Sprintf("%s, valley fraction %s", p.Shared, plain(p.ValleyFraction))},
 		{"Reference injections", strings.Join(refs, ", ")},
-		{"Co-elution of qualifiers", "± " + number(m.Identification.CoelutionMin, 3) + " min"},
-		{"Recorded m/z from the method's", "± " + number(m.Identification.TransitionTolMZ, 3)},
+		{"Co-elution of qualifiers", "± " + plain(m.Identification.CoelutionMin) + " min"},
+		{"Recorded m/z from the method's", "± " + plain(m.Identification.TransitionTolMZ)},
 		{"Analyte in a blank", "at most " + pc(b.BlankMaxOfLowest) + " of the lowest calibrator"},
 		{"Internal standard in a blank", "at most " + pc(b.BlankMaxOfInternalStandard) + " of the calibrators' mean"},
 		{"Back-calculated calibrators", fmt.Sprintf("within ± %s (lowest ± %s); %s of them and %d levels must pass", pc(b.CalibratorBias), pc(b.LowestCalibratorBias), pc(b.CalibratorShare), b.CalibratorLevels)},
@@ -122,8 +122,8 @@ func (d *document) criteria() {
 		rows = append(rows, []string{what, value, c.Clause, c.Tag})
 	}
 	id := set.Identification
-	row("Signal-to-noise", "at least "+number(id.SignalToNoise.Value, 3), id.SignalToNoise.Cite)
-	row("Transitions", "at least "+number(id.Transitions.Value, 3), id.Transitions.Cite)
+	row("Signal-to-noise", "at least "+plain(id.SignalToNoise.Value), id.SignalToNoise.Cite)
+	row("Transitions", "at least "+plain(id.Transitions.Value), id.Transitions.Cite)
 	row("Retention time", tolerance(id.Retention.Kind, id.Retention.AbsoluteMin, id.Retention.Relative, "min", 1)+advisory(id.Retention.Required), id.Retention.Cite)
 	row("Relative retention", tolerance(id.RelativeRetention.Kind, nil, id.RelativeRetention.Relative, "", 1)+advisory(id.RelativeRetention.Required), id.RelativeRetention.Cite)
 	for _, b := range id.Abundance {
@@ -131,10 +131,10 @@ func (d *document) criteria() {
 		if b.FromInclusive {
 			edge = "from "
 		}
-		row("Abundance, reference "+edge+number(b.From*100, 3)+" %", tolerance(b.Kind, b.Absolute, b.Relative, "percentage points", 100), b.Cite)
+		row("Abundance, reference "+edge+statedPercent(b.From), tolerance(b.Kind, b.Absolute, b.Relative, "percentage points", 100), b.Cite)
 	}
-	row("Aliquots for a quantity", "at least "+number(set.Quantity.Aliquots.Value, 3), set.Quantity.Aliquots.Cite)
-	row("Coverage factor", "k = "+number(set.Quantity.CoverageFactor.Value, 3), set.Quantity.CoverageFactor.Cite)
+	row("Aliquots for a quantity", "at least "+plain(set.Quantity.Aliquots.Value), set.Quantity.Aliquots.Cite)
+	row("Coverage factor", "k = "+plain(set.Quantity.CoverageFactor.Value), set.Quantity.CoverageFactor.Cite)
 	if g := set.Quantity.Gravity; g != nil {
 		row("Specific gravity", fmt.Sprintf("above %g: limit × (SG + %g − 1)/(%g − 1)", g.ApplyAbove, g.Add, g.Reference), g.Cite)
 	}
@@ -142,12 +142,12 @@ func (d *document) criteria() {
 		if !requestedHere(d, l.Analyte) {
 			continue
 		}
-		value := "threshold " + number(l.Threshold, 4) + " ng/mL"
+		value := "threshold " + plain(l.Threshold) + " ng/mL"
 		if l.MaxStdU != nil {
-			value += ", largest u " + number(*l.MaxStdU, 3) + " ng/mL"
+			value += ", largest u " + plain(*l.MaxStdU) + " ng/mL"
 		}
 		if l.DecisionLimit != nil {
-			value += ", decision limit " + number(*l.DecisionLimit, 4) + " ng/mL"
+			value += ", decision limit " + plain(*l.DecisionLimit) + " ng/mL"
 		}
 		row("Limit, "+l.Analyte, value+", "+l.Compare+", rounding: "+l.Rounding, l.Cite)
 	}
@@ -175,10 +175,10 @@ func advisory(required bool) string {
 func tolerance(kind string, absolute, relative *float64, u string, scale float64) string {
 	var parts []string
 	if absolute != nil {
-		parts = append(parts, "± "+number(*absolute*scale, 3)+" "+u)
+		parts = append(parts, "± "+number(*absolute*scale, 6)+" "+u)
 	}
 	if relative != nil {
-		parts = append(parts, "± "+number(*relative*100, 3)+" % of the reference")
+		parts = append(parts, "± "+number(*relative*100, 6)+" % of the reference")
 	}
 	text := strings.Join(parts, " or ")
 	switch kind {

@@ -15,7 +15,7 @@ func (d *document) deviations() {
 	} else {
 		var rows [][]string
 		for _, x := range rec.Case.Deviations {
-			rows = append(rows, []string{x.At, x.Text, x.ApprovedBy})
+			rows = append(rows, []string{when(x.At), x.Text, x.ApprovedBy})
 		}
 		d.table(table{columns: []column{{head: "Time", share: 2}, {head: "Deviation", share: 6}, {head: "Approved by", share: 1.2}}, rows: rows})
 	}
@@ -30,7 +30,7 @@ func (d *document) deviations() {
 				auto = fmt.Sprintf("%.3f to %.3f min, area %s", m.Automatic.StartMin, m.Automatic.EndMin, compact(m.Automatic.Area, 4))
 			}
 			rows = append(rows, []string{inj.ID + " (" + string(inj.Role) + ")", m.Compound + " " + m.Trace, auto, fmt.Sprintf("%.3f to %.3f min, area %s", m.Peak.StartMin, m.Peak.EndMin, compact(m.Peak.Area, 4)), percentage(m.Manual.AreaChange, 3),
-				m.Manual.By + ", " + m.Manual.At + ", approved by " + m.Manual.ApprovedBy, m.Manual.Reason})
+				m.Manual.By + ", " + when(m.Manual.At) + ", approved by " + m.Manual.ApprovedBy, m.Manual.Reason})
 		}
 	}
 	if len(rows) == 0 {

@@ -2,6 +2,8 @@ package render
 
 import (
 	"image/color"
+	"strconv"
+	"time"
 
 	"assaywrit/decision"
 	"assaywrit/evidence/units"
@@ -37,6 +39,24 @@ const (
 
 // number writes a value for people. Every number on a page goes through it or through decision.TextWithU.
 func number(v float64, digits int) string { return decision.Text(v, digits) }
+
+// plain writes a value as it was stated, in its shortest decimal.
+func plain(v float64) string { return strconv.FormatFloat(v, 'f', -1, 64) }
+
+// stated writes a stated fraction in per cent.
+func statedPercent(v float64) string { return decision.Text(float64(v*100), 12) + " %" }
+
+// when writes a time of the record for people: date, time to the minute (or second, where it has one), offset.
+func when(text string) string {
+	t, err := time.Parse(time.RFC3339, text)
+	if err != nil {
+		return text
+	}
+	if t.Second() != 0 {
+		return t.Format("2006-01-02 15:04:05 -07:00")
+	}
+	return t.Format("2006-01-02 15:04 -07:00")
+}
 
 // optional is number, or a dash for what is missing.
 func optional(v *float64, digits int) string {

@@ -17,7 +17,7 @@ type column struct {
 	mono  bool
 }
 
-const cellPad = 1.2
+const cellPad = 1.5
 
 // table sets t over the width of the text.
 func (d *document) table(t table) {
