@@ -79,9 +79,17 @@ func printFinding(w io.Writer, f *decision.Finding) {
 			fmt.Fprintf(w, "      %s\n", line)
 		}
 		if len(a.Failed) > 0 {
-			fmt.Fprintf(w, "      not met: %s\n", listed(a.Failed))
+			fmt.Fprintf(w, "      not met: %s\n", firstOf(a.Failed, 3))
 		}
 	}
+}
+
+// firstOf lists the first few names and says how many there are beyond.
+func firstOf(names []string, most int) string {
+	if len(names) <= most {
+		return listed(names)
+	}
+	return fmt.Sprintf("%s and %d more", listed(names[:most]), len(names)-most)
 }
 
 func listed(names []string) string { return strings.Join(names, ", ") }

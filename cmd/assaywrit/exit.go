@@ -58,7 +58,8 @@ func isInput(err error) bool {
 	var syntax *trace.SyntaxError
 	var interval *peak.IntervalError
 	var points *peak.TraceError
-	return errors.As(err, &problem) || errors.As(err, &problems) || errors.As(err, &syntax) || errors.As(err, &interval) || errors.As(err, &points)
+	var parameter *peak.ParameterError
+	return errors.As(err, &problem) || errors.As(err, &problems) || errors.As(err, &syntax) || errors.As(err, &interval) || errors.As(err, &points) || errors.As(err, &parameter)
 }
 
 // report prints an error, each of its parts as cause and advice on two lines.

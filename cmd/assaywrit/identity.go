@@ -132,10 +132,7 @@ func writeIdentity(s streams, folder, name string, id *identity.Identity, passph
 		path string
 		data []byte
 	}{{filepath.Join(folder, name+".key"), key}, {filepath.Join(folder, name+".pem"), identity.CertificatePEM(id.Certificate)}} {
-		if err := bundle.WriteFileAtomic(f.path, false, func(w io.Writer) error { _, err := w.Write(f.data); return err }); err != nil {
-			return err
-		}
-		if err := os.Chmod(f.path, 0o600); err != nil {
+		if err := bundle.WriteFileAtomicMode(f.path, 0o600, false, func(w io.Writer) error { _, err := w.Write(f.data); return err }); err != nil {
 			return err
 		}
 		fmt.Fprintln(s.out, f.path)

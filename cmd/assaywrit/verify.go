@@ -100,7 +100,7 @@ func (v *verification) signatures() {
 		case !r.Trusted:
 			v.note("signatures", r.File, false, "the signature holds, but its certificate does not lead to one that was given with --trust")
 		default:
-			v.note("signatures", r.File, true, "%s %s at %s (claimed, no timestamp): %s", r.Person, r.Meaning, r.SigningTime.UTC().Format("2006-01-02 15:04:05Z"), r.Subject)
+			v.note("signatures", r.File, true, "%s (%s) signed as %q on %s (claimed, no timestamp), certificate SHA-256 %.16s…", r.Person, r.Position, r.Meaning, r.SigningTime.UTC().Format("2006-01-02 15:04:05Z"), r.CertificateFingerprint)
 		}
 	}
 	if v.allowUnsigned {
