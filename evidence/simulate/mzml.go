@@ -12,7 +12,10 @@ import (
 	"io"
 	"math"
 	"regexp"
+	"slices"
+	"strings"
 	"time"
+	"unicode/utf8"
 
 	"github.com/klauspost/compress/zlib"
 
@@ -36,7 +39,8 @@ type Run struct {
 // polarity, or with an m/z of 0, is written without it.
 //
 // What would make a file that its schema or a strict reader refuses is an error, and nothing is written: an ID or StartTime of the
-// wrong form, a trace without id or with that of another, times that do not increase, numbers that are not finite in 32 bits.
+// wrong form, text that XML cannot hold, a trace without id or with that of another, an m/z that is not from 0 to 1,000,000, times
+// that do not increase, numbers that are not finite, intensities beyond 32 bits.
 func WriteMzML(w io.Writer, run Run) error {
 	if err := run.check(); err != nil {
 		return err
@@ -58,7 +62,7 @@ func WriteMzML(w io.Writer, run Run) error {
 var ncName = regexp.MustCompile(`^[A-Za-z_][A-Za-z0-9._-]*$`)
 
 func (run Run) check() error {
-	if !ncName.MatchString(run.ID) || run.ID == sampleID || run.ID == softwareID || run.ID == instrumentID || run.ID == processingID {
+	if !ncName.MatchString(run.ID) || slices.Contains(usedIDs, run.ID) {
 		return fmt.Errorf("simulate: the run id %q, want a name of letters, digits, -, _ and . that the file does not use otherwise", run.ID)
 	}
 	if _, err := time.Parse(time.RFC3339, run.StartTime); err != nil {
@@ -67,17 +71,40 @@ func (run Run) check() error {
 	if len(run.Traces) == 0 {
 		return errors.New("simulate: a run without traces, want at least one")
 	}
+	for _, text := range []string{run.SampleCode, run.Model, run.Serial, run.Software, run.Version} {
+		if !holdsText(text) {
+			return fmt.Errorf("simulate: %q, want text that XML can hold", text)
+		}
+	}
 	ids := map[string]bool{}
 	for _, c := range run.Traces {
-		if c.ID == "" || ids[c.ID] {
-			return fmt.Errorf("simulate: the trace id %q, want one that no other trace has", c.ID)
+		if c.ID == "" || ids[c.ID] || !holdsText(c.ID) {
+			return fmt.Errorf("simulate: the trace id %q, want one that XML can hold and no other trace has", c.ID)
 		}
 		ids[c.ID] = true
+		for _, mz := range []float64{c.Transition.PrecursorMZ, c.Transition.ProductMZ} {
+			if !(mz >= 0 && mz <= 1e6) {
+				return fmt.Errorf("simulate: trace %q: m/z %g, want one from 0 (not known) to 1000000", c.ID, mz)
+			}
+		}
 		if err := checkPoints(c); err != nil {
 			return err
 		}
 	}
 	return nil
+}
+
+// holdsText tells whether XML 1.0 can hold s (production 2, Char).
+func holdsText(s string) bool {
+	for i, r := range s {
+		if r == utf8.RuneError && !strings.HasPrefix(s[i:], string(utf8.RuneError)) {
+			return false // not UTF-8
+		}
+		if r < 0x20 && r != '\t' && r != '\n' && r != '\r' || r == 0xfffe || r == 0xffff {
+			return false
+		}
+	}
+	return true
 }
 
 // checkPoints refuses what breaks the contract of a trace, or does not fit into 32 bits.
@@ -104,6 +131,8 @@ const (
 	instrumentID = "instrument"
 	processingID = "export"
 )
+
+var usedIDs = []string{sampleID, softwareID, instrumentID, processingID, "MS", "UO"}
 
 type mzmlWriter struct {
 	buf     bytes.Buffer
