@@ -117,8 +117,8 @@ func (d *document) peakTable(list []*evidence.Measurement) {
 		rows = append(rows, []string{m.Compound, m.Trace, fmt.Sprintf("%.3f to %.3f", p.StartMin, p.EndMin), compact(p.Height, 4), compact(m.Noise, 3), fixed3(p.WidthHalfMin), optional(p.Symmetry, 3), optional(p.Plates, 4), rs,
 			string(p.StartKind) + ", " + string(p.EndKind)})
 	}
-	d.table(table{columns: []column{{head: "Substance", share: 1.6}, {head: "Trace", share: 1.8}, {head: "From, to, min", share: 1.8}, {head: "Height, counts", share: 1.1, right: true}, {head: "Noise, counts", share: 0.9, right: true}, {head: "Width at half, min", share: 1, right: true},
-		{head: "Symmetry at 5 %", share: 1.2, right: true}, {head: "N (half)", share: 0.9, right: true}, {head: "Rs (half) before / after", share: 1.3, right: true}, {head: "Limits at", share: 1.4}}, rows: rows, size: 7.2})
+	d.table(table{columns: []column{{head: "Substance", share: 1.6}, {head: "Trace", share: 1.8}, {head: "From, to, min", share: 1.8}, {head: "Height, counts", share: 1.35, right: true}, {head: "Noise, counts", share: 0.9, right: true}, {head: "Width at half, min", share: 1, right: true},
+		{head: "Symmetry, 5 %", share: 1.35, right: true}, {head: "N (half)", share: 0.9, right: true}, {head: "Rs (half) before / after", share: 1.3, right: true}, {head: "Limits at", share: 1.3}}, rows: rows, size: 7.2})
 }
 
 // injectionTraces is a page of small charts: a row for each analyte, its ions and its internal standard.
