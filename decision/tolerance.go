@@ -13,7 +13,7 @@ func halfWidth(kind string, absolute, relative *float64, reference float64) floa
 		a = *absolute
 	}
 	if relative != nil {
-		r = float64(*relative * math.Abs(reference))
+		r, _ = mul(*relative, math.Abs(reference))
 	}
 	switch kind {
 	case "absolute":
@@ -45,6 +45,7 @@ func (w window) distance(v float64) float64 {
 	return 1 - math.Abs(v-(w.low+w.high)/2)/half
 }
 
+func mul(a, b float64) (float64, bool) { r := decimal(a); return r.Mul(r, decimal(b)).Float64() }
 func add(a, b float64) (float64, bool) { r := decimal(a); return r.Add(r, decimal(b)).Float64() }
 func sub(a, b float64) (float64, bool) { r := decimal(a); return r.Sub(r, decimal(b)).Float64() }
 
