@@ -1,5 +1,5 @@
-// Package formats tells which format a raw file is in, by its content, and reads it. A format is one folder beside this one and one
-// line in the list below.
+// Package formats tells which format a raw file is in, by its content and never by its name, and reads it. A format is one folder
+// beside this one and one line in the list below. A file inside gzip is unpacked first.
 package formats
 
 import (
@@ -36,27 +36,42 @@ func Names() []string {
 }
 
 // Read reads a raw file in whatever format it is. Delimited text has no mark of its own: tables gives the layout that the method
-// declares for a name, if it does.
+// declares for a name, if it does; tables may be nil. Content that no format recognises is refused with a *trace.SyntaxError.
 func Read(name string, src trace.Source, tables func(name string) (table.Layout, bool)) (*trace.File, error) {
-	head := make([]byte, min(headBytes, src.Size()))
-	if n, err := src.ReadAt(head, 0); n < len(head) && err != io.EOF {
+	head, err := first(src)
+	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
+	}
+	if packed(head) {
+		if src, err = unpack(name, src); err == nil {
+			head, err = first(src)
+		}
+		if err != nil {
+			return nil, err
+		}
 	}
 	for _, f := range known {
 		if f.sniff(head) {
 			return f.read(name, src)
 		}
 	}
-	if layout, ok := tables(name); ok {
-		return table.Read(name, src, layout)
+	if tables != nil {
+		if layout, declared := tables(name); declared {
+			return table.Read(name, src, layout)
+		}
 	}
-	return nil, &trace.SyntaxError{File: name, Got: describe(head), Want: "one of: " + strings.Join(Names(), ", "),
-		Hint: "export the run from the instrument's software in an open format"}
+	return nil, &trace.SyntaxError{File: name, Got: describe(head), Want: strings.Join(Names(), ", or "),
+		Hint: "export the run from the instrument's software in an open format, or declare the layout of its text in the method's tables"}
+}
+
+// first returns the beginning of a file.
+func first(src trace.Source) ([]byte, error) {
+	return trace.ReadAll(io.NewSectionReader(src, 0, min(headBytes, src.Size())))
 }
 
 func describe(head []byte) string {
 	if len(head) == 0 {
 		return "an empty file"
 	}
-	return fmt.Sprintf("content that begins with %.16q", head)
+	return fmt.Sprintf("content that begins with %q", head[:min(16, len(head))])
 }

@@ -36,6 +36,14 @@ func Read(name string, src trace.Source) (*trace.File, error) {
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
+	r, err := readAll(name, data)
+	if err != nil {
+		return nil, err
+	}
+	return r.file, nil
+}
+
+func readAll(name string, data []byte) (*reader, error) {
 	s, err := newScanner(name, data)
 	if err != nil {
 		return nil, err
@@ -45,7 +53,7 @@ func Read(name string, src trace.Source) (*trace.File, error) {
 		return nil, err
 	}
 	r.finish()
-	return r.file, nil
+	return r, nil
 }
 
 // A reader goes through one file, once.

@@ -1,11 +1,13 @@
 // Package table reads chromatograms from delimited text whose layout a method declares: which column holds the time and in which
-// unit, and what each other column followed. Nothing about the layout is guessed.
+// unit, and what each other column followed. Nothing about the layout is guessed. Times come out in minutes, intensities as written.
+//
+// Quoted fields are not read: exports of traces hold numbers.
 package table
 
 import (
 	"bytes"
 	"fmt"
-	"math"
+	"slices"
 	"strconv"
 	"strings"
 	"unicode/utf8"
@@ -13,25 +15,16 @@ import (
 	"assaywrit/evidence/trace"
 )
 
-// A Layout declares the columns, counted from 1.
-type Layout struct {
-	Separator   byte   // ',', ';' or tab
-	DecimalMark byte   // '.' or ','; a comma only where it is not the separator
-	HeaderLines int    // lines before the first point
-	TimeColumn  int    // the time's
-	TimeUnit    string // "min" or "s"
-	Columns     []Column
-}
+const (
+	orderHint  = "points must be in acquisition order; export the run again and compare its SHA-256"
+	layoutHint = "compare the file with its layout in the method's tables: separator, decimal mark, header lines, columns"
+)
 
-// A Column is one trace.
-type Column struct {
-	Column     int
-	ID         string
-	Transition trace.Transition
-}
+var byteOrderMark = []byte("\xef\xbb\xbf")
 
 // Read reads the declared columns. Text is UTF-8, with or without a byte-order mark, with LF or CRLF. Numbers are plain decimals;
-// times must increase. The error is a *trace.SyntaxError with line and column (in characters).
+// every point has as many fields as the first; times must increase; empty lines may stand at the end only. The error is a
+// *trace.SyntaxError with line and column (in characters, of the field's start), or says what is wrong with the layout.
 func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	if err := layout.check(); err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
@@ -40,92 +33,93 @@ func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
-	data = bytes.TrimPrefix(data, []byte("\xef\xbb\xbf"))
-	r := reader{name: name, layout: layout, file: &trace.File{Format: "delimited text"}}
-	for _, c := range layout.Columns {
-		kind := trace.Other
-		if c.Transition.ProductMZ > 0 {
-			kind = trace.SRM
-		}
-		r.file.Chromatograms = append(r.file.Chromatograms, trace.Chromatogram{ID: c.ID, Kind: kind, Transition: c.Transition})
-	}
+	r := &reader{name: name, layout: layout, width: layout.width(), intensity: make([][]float64, len(layout.Columns))}
+	data = bytes.TrimPrefix(data, byteOrderMark)
 	for len(data) > 0 {
 		var line []byte
 		line, data, _ = bytes.Cut(data, []byte("\n"))
-		r.line++
-		if r.line <= layout.HeaderLines {
-			continue
-		}
-		if err := r.point(bytes.TrimSuffix(line, []byte("\r"))); err != nil {
+		if err := r.take(bytes.TrimSuffix(line, []byte("\r"))); err != nil {
 			return nil, err
 		}
 	}
-	if len(r.time) == 0 {
-		return nil, r.fail(1, "no point", "one line for each point after the header", "look at header_lines in the method's tables")
-	}
-	for i := range r.file.Chromatograms {
-		r.file.Chromatograms[i].TimeMin = r.time
-	}
-	return r.file, nil
-}
-
-func (l Layout) check() error {
-	switch {
-	case l.Separator != ',' && l.Separator != ';' && l.Separator != '\t':
-		return fmt.Errorf("a separator of %q: want comma, semicolon or tab", l.Separator)
-	case l.DecimalMark != '.' && l.DecimalMark != ',' || l.DecimalMark == l.Separator:
-		return fmt.Errorf("a decimal mark of %q with the separator %q: want point, or comma where it is not the separator", l.DecimalMark, l.Separator)
-	case l.TimeUnit != "min" && l.TimeUnit != "s":
-		return fmt.Errorf("a time unit of %q: want min or s", l.TimeUnit)
-	case l.TimeColumn < 1 || len(l.Columns) == 0:
-		return fmt.Errorf("time in column %d and %d traces: want a column from 1 and at least one trace", l.TimeColumn, len(l.Columns))
-	}
-	seen := map[string]bool{}
-	for _, c := range l.Columns {
-		if c.Column < 1 || c.Column == l.TimeColumn || c.ID == "" || seen[c.ID] {
-			return fmt.Errorf("the trace %q in column %d: want an id of its own, and a column from 1 that is not the time's", c.ID, c.Column)
-		}
-		seen[c.ID] = true
-	}
-	return nil
+	return r.finish()
 }
 
 type reader struct {
 	name   string
 	layout Layout
-	file   *trace.File
 	line   int
-	time   []float64
+	width  int // fields that a line must have at least
+	fields int // of the first point
 	empty  int // line of an empty line, after which nothing may follow
+
+	written   string  // the last time as the file writes it
+	last      float64 // the same as a number, in the file's unit
+	time      []float64
+	intensity [][]float64
 }
 
 func (r *reader) fail(column int, got, want, hint string) error {
 	return &trace.SyntaxError{File: r.name, Line: r.line, Column: column, Got: got, Want: want, Hint: hint}
 }
 
-// point reads one line. Empty lines are accepted at the end of the file only.
-func (r *reader) point(line []byte) error {
+// take reads one line.
+func (r *reader) take(line []byte) error {
+	r.line++
+	if !utf8.Valid(line) {
+		return r.fail(1+validRunes(line), "text that is not UTF-8", "UTF-8", "")
+	}
+	if r.line <= r.layout.HeaderLines {
+		return nil
+	}
 	if len(bytes.TrimSpace(line)) == 0 {
-		r.empty = r.line
+		if r.empty == 0 {
+			r.empty = r.line
+		}
 		return nil
 	}
 	if r.empty > 0 {
 		return r.fail(1, fmt.Sprintf("a point after the empty line %d", r.empty), "points without gaps", "take the empty line out, if nothing is missing there")
 	}
-	if !utf8.Valid(line) {
-		return r.fail(1, "text that is not UTF-8", "UTF-8", "")
+	return r.point(strings.Split(string(line), string(r.layout.Separator)))
+}
+
+// validRunes counts the characters before the first byte that is not UTF-8.
+func validRunes(line []byte) int {
+	n := 0
+	for len(line) > 0 {
+		c, size := utf8.DecodeRune(line)
+		if c == utf8.RuneError && size == 1 {
+			break
+		}
+		line = line[size:]
+		n++
 	}
-	fields := strings.Split(string(line), string(r.layout.Separator))
-	t, err := r.number(fields, r.layout.TimeColumn)
+	return n
+}
+
+// point reads the fields of one line.
+func (r *reader) point(fields []string) error {
+	switch n := len(fields); {
+	case n < r.width:
+		return r.fail(start(fields, n), fmt.Sprintf("a line of %d fields", n), fmt.Sprintf("at least %d", r.width), layoutHint)
+	case r.fields == 0:
+		r.fields = n
+	case n != r.fields:
+		return r.fail(start(fields, min(n, r.fields+1)), fmt.Sprintf("a line of %d fields", n), fmt.Sprintf("%d, as in the first point", r.fields), layoutHint)
+	}
+	at := r.layout.TimeColumn
+	t, err := r.number(fields, at)
 	if err != nil {
 		return err
 	}
+	written := strings.Trim(fields[at-1], " \t")
+	if len(r.time) > 0 && t <= r.last {
+		return r.fail(start(fields, at), strconv.Quote(written), fmt.Sprintf("a time after %s %s", r.written, r.layout.TimeUnit), orderHint)
+	}
+	r.last, r.written = t, written
 	if r.layout.TimeUnit == "s" {
 		t /= 60
-	}
-	if n := len(r.time); n > 0 && t <= r.time[n-1] {
-		return r.fail(columnOf(fields, r.layout.TimeColumn), strconv.Quote(strings.TrimSpace(fields[r.layout.TimeColumn-1])), fmt.Sprintf("a time after %g min", r.time[n-1]),
-			"points must be in acquisition order; export the run again and compare its SHA-256")
 	}
 	r.time = append(r.time, t)
 	for i, c := range r.layout.Columns {
@@ -133,40 +127,55 @@ func (r *reader) point(line []byte) error {
 		if err != nil {
 			return err
 		}
-		r.file.Chromatograms[i].Intensity = append(r.file.Chromatograms[i].Intensity, y)
+		r.intensity[i] = append(r.intensity[i], y)
 	}
 	return nil
 }
 
 func (r *reader) number(fields []string, column int) (float64, error) {
-	if column > len(fields) {
-		return 0, r.fail(1, fmt.Sprintf("%d fields", len(fields)), fmt.Sprintf("at least %d", column), "a line that is cut, or another separator than the method's tables declare")
-	}
-	text := strings.TrimSpace(fields[column-1])
-	plain := text
+	text := strings.Trim(fields[column-1], " \t")
+	plain, want := text, "a decimal number"
 	if r.layout.DecimalMark == ',' {
-		if strings.Contains(text, ".") {
-			plain = ""
-		}
-		plain = strings.Replace(plain, ",", ".", 1)
+		want = "a decimal number with a comma"
+		plain = strings.Map(func(c rune) rune { // a point is then no part of a number
+			switch c {
+			case ',':
+				return '.'
+			case '.':
+				return ','
+			}
+			return c
+		}, text)
 	}
-	v, err := strconv.ParseFloat(plain, 64)
-	if err != nil || !isDecimal(plain) || math.IsInf(v, 0) {
-		return 0, r.fail(columnOf(fields, column), strconv.Quote(text), "a decimal number", "")
+	v, ok := trace.Decimal(plain)
+	if !ok {
+		return 0, r.fail(start(fields, column), strconv.Quote(text), want, layoutHint)
 	}
 	return v, nil
 }
 
-// isDecimal refuses what ParseFloat takes beyond plain decimals: infinities, other bases, underscores.
-func isDecimal(s string) bool {
-	return s != "" && strings.Trim(s, "0123456789.eE+-") == ""
-}
-
-// columnOf is the character in its line at which a field begins, counted from 1.
-func columnOf(fields []string, column int) int {
+// start is the character in its line at which a field begins, counted from 1.
+func start(fields []string, column int) int {
 	at := 1
-	for _, f := range fields[:min(column-1, len(fields))] {
+	for _, f := range fields[:column-1] {
 		at += utf8.RuneCountInString(f) + 1
 	}
 	return at
+}
+
+// finish makes the chromatograms.
+func (r *reader) finish() (*trace.File, error) {
+	if len(r.time) == 0 {
+		r.line++
+		return nil, r.fail(1, "the end of the file", fmt.Sprintf("points after %d header lines", r.layout.HeaderLines), layoutHint)
+	}
+	file := &trace.File{Format: "delimited text"}
+	for i, c := range r.layout.Columns {
+		t := trace.Chromatogram{ID: c.ID, Kind: kind(c.Transition), Transition: c.Transition, TimeMin: slices.Clone(r.time), Intensity: r.intensity[i]}
+		if b := t.Check(); b != nil {
+			return nil, &trace.SyntaxError{File: r.name, Line: r.layout.HeaderLines + b.Point, Got: fmt.Sprintf("%s in the trace %q", b.Got, c.ID), Want: b.Want, Hint: orderHint}
+		}
+		file.Chromatograms = append(file.Chromatograms, t)
+	}
+	return file, nil
 }
