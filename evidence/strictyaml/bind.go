@@ -2,12 +2,10 @@ package strictyaml
 
 import (
 	"fmt"
-	"io/fs"
 	"reflect"
 	"slices"
 	"strconv"
 	"strings"
-	"time"
 
 	"go.yaml.in/yaml/v4"
 
@@ -39,18 +37,30 @@ func (b *binder) report(n *yaml.Node, key, got, want, hint string) {
 	b.problems = append(b.problems, Problem{b.doc.file, n.Line, n.Column, key, got, want, hint})
 }
 
+// plain refuses what YAML has beyond keys, lists and values.
+func (b *binder) plain(n *yaml.Node, key string) bool {
+	const quote = "put a text that begins with &, * or ! in quotes"
+	switch {
+	case n.Kind == yaml.AliasNode:
+		b.report(n, key, "the alias *"+n.Value, "the value itself", "write the value out in both places; "+quote)
+	case n.Anchor != "":
+		b.report(n, key, "the anchor &"+n.Anchor, "a value without an anchor", "write the value out in both places; "+quote)
+	case n.Style&yaml.TaggedStyle != 0 || n.Tag == "!":
+		b.report(n, key, "the tag "+n.Tag, "a value without a tag", quote)
+	default:
+		return true
+	}
+	return false
+}
+
 // value binds one node to one Go value.
 func (b *binder) value(n *yaml.Node, key string, f field, v reflect.Value, depth int) {
 	b.doc.places[key] = place{n.Line, n.Column}
-	switch {
-	case depth > maxDepth:
+	if depth > maxDepth {
 		b.report(n, key, "nesting that goes too deep", fmt.Sprintf("at most %d levels", maxDepth), "")
 		return
-	case n.Kind == yaml.AliasNode || n.Anchor != "":
-		b.report(n, key, "an anchor or alias", "the value itself", "write the value out in both places")
-		return
-	case n.Style&yaml.TaggedStyle != 0:
-		b.report(n, key, "the tag "+n.Tag, "a value without a tag", "")
+	}
+	if !b.plain(n, key) {
 		return
 	}
 	if v.Kind() == reflect.Pointer {
@@ -59,7 +69,7 @@ func (b *binder) value(n *yaml.Node, key string, f field, v reflect.Value, depth
 	}
 	switch v.Kind() {
 	case reflect.Struct:
-		b.mapping(n, key, v, depth)
+		b.mapping(n, key, f, v, depth)
 	case reflect.Slice:
 		b.list(n, key, f, v, depth)
 	default:
@@ -67,43 +77,52 @@ func (b *binder) value(n *yaml.Node, key string, f field, v reflect.Value, depth
 	}
 }
 
-func (b *binder) mapping(n *yaml.Node, key string, v reflect.Value, depth int) {
+func (b *binder) mapping(n *yaml.Node, key string, f field, v reflect.Value, depth int) {
+	fields := fieldsOf(v.Type())
 	if n.Kind != yaml.MappingNode {
-		b.report(n, key, kindOf(n), "keys and values", "")
+		hint := ""
+		if n.Kind == yaml.ScalarNode && strings.Contains(n.Value, ":") {
+			hint = "a space follows the colon after a key"
+		}
+		b.report(n, key, kindOf(n), describe(f)+": "+keysOf(fields), hint)
 		return
 	}
-	fields := fieldsOf(v.Type())
 	seen := map[string]bool{}
 	for i := 0; i+1 < len(n.Content); i += 2 {
 		name, inner := n.Content[i], n.Content[i+1]
+		if !b.plain(name, key) {
+			continue
+		}
 		at := join(key, name.Value)
 		k := slices.IndexFunc(fields, func(f field) bool { return f.key == name.Value })
 		switch {
-		case name.Kind != yaml.ScalarNode || k < 0:
-			b.report(name, at, fmt.Sprintf("unknown key %q", name.Value), "one of: "+keysOf(fields), near(name.Value, fields))
-			continue
+		case name.Kind != yaml.ScalarNode:
+			b.report(name, key, kindOf(name)+" as a key", "a name: "+keysOf(fields), "")
+		case name.Tag == "!!merge":
+			b.report(name, at, "a merge key", "the keys themselves", "write the keys out in both places")
+		case k < 0:
+			b.report(name, at, "the unknown key "+Quote(name.Value), "one of: "+keysOf(fields), nearKey(name.Value, fields))
 		case seen[name.Value]:
-			b.report(name, at, fmt.Sprintf("the key %q a second time", name.Value), "each key once", "")
-			continue
+			b.report(name, at, "the key "+Quote(name.Value)+" a second time", "each key once", "")
+		default:
+			seen[name.Value] = true
+			b.value(inner, at, fields[k], v.FieldByIndex(fields[k].index), depth+1)
 		}
-		seen[name.Value] = true
-		b.value(inner, at, fields[k], v.FieldByIndex(fields[k].index), depth+1)
-		b.doc.places[at] = place{inner.Line, inner.Column}
 	}
 	for _, f := range fields {
 		if !f.optional && !seen[f.key] {
-			b.report(n, join(key, f.key), "no such key", fmt.Sprintf("%q: %s", f.key, describe(f)), "")
+			b.report(n, join(key, f.key), "no such key", describe(f), "")
 		}
 	}
 }
 
 func (b *binder) list(n *yaml.Node, key string, f field, v reflect.Value, depth int) {
 	if n.Kind != yaml.SequenceNode {
-		b.report(n, key, kindOf(n), "a list: "+describe(f), "a list is written [a, b], or one \"- item\" a line; an empty one is []")
+		b.report(n, key, kindOf(n), describe(f), `a list is written [a, b], or one "- item" a line; an empty one is []`)
 		return
 	}
 	if len(n.Content) < f.minItems {
-		b.report(n, key, fmt.Sprintf("a list of %d", len(n.Content)), fmt.Sprintf("at least %d", f.minItems), "")
+		b.report(n, key, fmt.Sprintf("a list of %d", len(n.Content)), fmt.Sprintf("at least %d: %s", f.minItems, describe(f)), "")
 	}
 	v.Set(reflect.MakeSlice(v.Type(), len(n.Content), len(n.Content)))
 	item := f
@@ -119,7 +138,12 @@ func (b *binder) scalar(n *yaml.Node, key string, f field, v reflect.Value) {
 		return
 	}
 	if n.Tag == "!!null" {
-		b.report(n, key, "nothing", describe(f), "take the key out if there is no value")
+		b.report(n, key, "nothing", describe(f), "take the key out if there is no value and it is optional; put the word null in quotes if it is meant")
+		return
+	}
+	bare := n.Style&(yaml.SingleQuotedStyle|yaml.DoubleQuotedStyle|yaml.LiteralStyle|yaml.FoldedStyle) == 0
+	if !bare && v.Kind() != reflect.String && f.family == nil {
+		b.report(n, key, "the text "+Quote(n.Value), describe(f), "take the quotation marks away")
 		return
 	}
 	switch v.Kind() {
@@ -127,14 +151,14 @@ func (b *binder) scalar(n *yaml.Node, key string, f field, v reflect.Value) {
 		b.text(n, key, f, v)
 	case reflect.Bool:
 		if n.Value != "true" && n.Value != "false" {
-			b.report(n, key, quoted(n), "true or false", "")
+			b.report(n, key, Quote(n.Value), describe(f), "")
 			return
 		}
 		v.SetBool(n.Value == "true")
 	case reflect.Int:
 		i, err := strconv.Atoi(n.Value)
 		if err != nil || strconv.Itoa(i) != n.Value {
-			b.report(n, key, quoted(n), "a whole number", "")
+			b.report(n, key, Quote(n.Value), describe(f), units.NumberHint(n.Value))
 			return
 		}
 		if b.inLimits(n, key, f, float64(i)) {
@@ -148,16 +172,13 @@ func (b *binder) scalar(n *yaml.Node, key string, f field, v reflect.Value) {
 }
 
 func (b *binder) number(n *yaml.Node, key string, f field, v reflect.Value) {
-	var x float64
-	var err error
+	parse, hint := units.ParseNumber, units.NumberHint
 	if f.family != nil {
-		x, err = f.family.Parse(n.Value)
-		if err != nil {
-			b.report(n, key, quoted(n), f.family.Want(), commaHint(n.Value))
-			return
-		}
-	} else if x, err = units.ParseNumber(n.Value); err != nil {
-		b.report(n, key, quoted(n), "a number", commaHint(n.Value))
+		parse, hint = f.family.Parse, f.family.Hint
+	}
+	x, err := parse(n.Value)
+	if err != nil {
+		b.report(n, key, Quote(n.Value), describe(f), hint(n.Value))
 		return
 	}
 	if b.inLimits(n, key, f, x) {
@@ -167,44 +188,20 @@ func (b *binder) number(n *yaml.Node, key string, f field, v reflect.Value) {
 
 func (b *binder) inLimits(n *yaml.Node, key string, f field, x float64) bool {
 	if (f.min != nil && x < *f.min) || (f.max != nil && x > *f.max) || (f.above != nil && x <= *f.above) {
-		b.report(n, key, quoted(n), limits(f), "")
+		b.report(n, key, Quote(n.Value), describe(f), "")
 		return false
 	}
 	return true
 }
 
 func (b *binder) text(n *yaml.Node, key string, f field, v reflect.Value) {
-	s := strings.TrimSpace(n.Value)
-	if f.format == "path" {
-		s = strings.ReplaceAll(s, `\`, "/")
-	}
-	ok := true
-	switch {
-	case len(f.enum) > 0:
-		ok = slices.Contains(f.enum, s)
-	case f.format == "rfc3339":
-		_, err := time.Parse(time.RFC3339, s)
-		ok = err == nil
-	case f.format == "date":
-		_, err := time.Parse(time.DateOnly, s)
-		ok = err == nil
-	case f.format == "path":
-		ok = fs.ValidPath(s) && s != "." && !strings.Contains(s, ":")
-	}
-	if ok && f.pattern != nil {
-		ok = f.pattern.MatchString(s)
-	}
-	if ok && (f.minLen > 0 || !f.optional) {
-		ok = len(s) >= max(f.minLen, 1)
-	}
+	s, hint, ok := checkText(n.Value, f)
 	if !ok {
-		b.report(n, key, quoted(n), describe(f), "")
+		b.report(n, key, Quote(n.Value), describe(f), hint)
 		return
 	}
 	v.SetString(s)
 }
-
-func quoted(n *yaml.Node) string { return fmt.Sprintf("%q", n.Value) }
 
 func join(key, name string) string {
 	if key == "" {
@@ -219,16 +216,11 @@ func kindOf(n *yaml.Node) string {
 		return "keys and values"
 	case yaml.SequenceNode:
 		return "a list"
+	case yaml.AliasNode:
+		return "an alias"
 	}
 	if n.Tag == "!!null" {
 		return "nothing"
 	}
-	return quoted(n)
-}
-
-func commaHint(text string) string {
-	if strings.Contains(text, ",") {
-		return "write a decimal point, and no separators of thousands"
-	}
-	return ""
+	return Quote(n.Value)
 }

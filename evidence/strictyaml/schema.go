@@ -7,7 +7,7 @@ import (
 )
 
 // Schema returns the JSON Schema (draft 2020-12) of what Bind accepts for a struct, or for a slice of structs. Quantities are
-// strings with their unit in it, by a pattern.
+// strings with their unit in them, by a pattern.
 func Schema(id, title string, of any) ([]byte, error) {
 	t := reflect.TypeOf(of)
 	if t.Kind() == reflect.Pointer {
@@ -49,24 +49,26 @@ func schemaOf(f field) map[string]any {
 		s["type"] = "integer"
 		numberLimits(s, f)
 	case reflect.Float64:
-		switch {
-		case f.family == nil:
-			s["type"] = "number"
-			numberLimits(s, f)
-		case f.family.Bare():
-			s["type"] = []string{"string", "number"}
-			s["pattern"] = f.family.Pattern()
-		default:
-			s["type"] = "string"
-			s["pattern"] = f.family.Pattern()
-		}
+		numberSchema(s, f)
 	default:
 		textSchema(s, f)
 	}
-	if f.doc != "" {
-		s["description"] = f.doc
+	if d := description(f); d != "" {
+		s["description"] = d
 	}
 	return s
+}
+
+// description: the limits of a quantity are beyond a schema's means, so they are told.
+func description(f field) string {
+	if f.family == nil || limits(f) == "" {
+		return f.doc
+	}
+	text := "Accepted: " + f.family.Want() + limits(f) + "."
+	if f.doc != "" {
+		text = f.doc + " " + text
+	}
+	return text
 }
 
 func objectSchema(t reflect.Type) map[string]any {
@@ -78,6 +80,22 @@ func objectSchema(t reflect.Type) map[string]any {
 		}
 	}
 	return map[string]any{"type": "object", "properties": properties, "required": required, "additionalProperties": false}
+}
+
+// numberSchema: a quantity is a string with its unit; a fraction below 1 may be a number.
+func numberSchema(s map[string]any, f field) {
+	if f.family == nil {
+		s["type"] = "number"
+		numberLimits(s, f)
+		return
+	}
+	s["type"], s["pattern"], s["examples"] = "string", f.family.Pattern(), []string{f.family.Example()}
+	if f.family.Bare() {
+		s["type"], s["exclusiveMaximum"] = []string{"string", "number"}, 1
+		if f.min != nil {
+			s["minimum"] = *f.min
+		}
+	}
 }
 
 func numberLimits(s map[string]any, f field) {
@@ -98,9 +116,11 @@ func textSchema(s map[string]any, f field) {
 	case len(f.enum) > 0:
 		s["enum"] = f.enum
 	case f.format == "rfc3339":
-		s["type"], s["pattern"] = "string", `^\d{4}-\d{2}-\d{2}T\d{2}:\d{2}:\d{2}(\.\d+)?(Z|[+-]\d{2}:\d{2})$`
+		s["type"], s["pattern"], s["examples"] = "string", timePattern, []string{"2026-03-14T16:20:00+01:00"}
 	case f.format == "date":
-		s["type"], s["pattern"] = "string", `^\d{4}-\d{2}-\d{2}$`
+		s["type"], s["pattern"], s["examples"] = "string", datePattern, []string{"2026-03-14"}
+	case f.format == "path":
+		s["type"], s["pattern"] = "string", pathPattern
 	default:
 		s["type"] = []string{"string", "number", "boolean"}
 		if f.pattern != nil {
