@@ -137,6 +137,7 @@ var usedIDs = []string{sampleID, softwareID, instrumentID, processingID, "MS", "
 type mzmlWriter struct {
 	buf     bytes.Buffer
 	offsets []int
+	zlib    *zlib.Writer
 }
 
 func (m *mzmlWriter) f(format string, args ...any) { fmt.Fprintf(&m.buf, format, args...) }
@@ -259,7 +260,7 @@ func (m *mzmlWriter) isolation(mz float64) {
 }
 
 func (m *mzmlWriter) array(data []byte, number, content string) error {
-	text, err := packed(data)
+	text, err := m.packed(data)
 	if err != nil {
 		return err
 	}
@@ -273,17 +274,23 @@ func (m *mzmlWriter) array(data []byte, number, content string) error {
 	return nil
 }
 
-// packed is data through zlib and base64, by a library whose output does not change with the compiler's release.
-func packed(data []byte) (string, error) {
+// packed is data through zlib and base64, by a library whose output does not change with the compiler's release. One compressor
+// serves the whole file: making it costs more than using it.
+func (m *mzmlWriter) packed(data []byte) (string, error) {
 	var b bytes.Buffer
-	z, err := zlib.NewWriterLevel(&b, 6)
-	if err != nil {
+	if m.zlib == nil {
+		z, err := zlib.NewWriterLevel(&b, 6)
+		if err != nil {
+			return "", err
+		}
+		m.zlib = z
+	} else {
+		m.zlib.Reset(&b)
+	}
+	if _, err := m.zlib.Write(data); err != nil {
 		return "", err
 	}
-	if _, err := z.Write(data); err != nil {
-		return "", err
-	}
-	if err := z.Close(); err != nil {
+	if err := m.zlib.Close(); err != nil {
 		return "", err
 	}
 	return base64.StdEncoding.EncodeToString(b.Bytes()), nil

@@ -22,7 +22,10 @@ type File struct {
 var texts embed.FS
 
 // Files returns the whole case folder, sorted by path. Two calls give the same bytes.
-func Files() ([]File, error) {
+func Files() ([]File, error) { return filesOf(simulated()) }
+
+// filesOf is the case folder with the traces of a simulated batch.
+func filesOf(b *simulate.Batch) ([]File, error) {
 	var files []File
 	err := fs.WalkDir(texts, "case", func(path string, d fs.DirEntry, err error) error {
 		if err != nil || d.IsDir() {
@@ -36,7 +39,6 @@ func Files() ([]File, error) {
 		return nil, err
 	}
 	files = append(files, File{"sequence.csv", sequence()})
-	b := simulated()
 	for i, row := range batch {
 		run, err := acquire(b, i)
 		if err != nil {
