@@ -43,7 +43,7 @@ func Read(name string, src trace.Source, tables func(name string) (table.Layout,
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
 	if packed(head) {
-		if src, err = unpack(name, src); err == nil {
+		if src, err = unpack(name, src, maxUnpacked); err == nil {
 			head, err = first(src)
 		}
 		if err != nil {

@@ -1,7 +1,6 @@
 package mzml
 
 import (
-	"slices"
 	"strings"
 
 	"assaywrit/evidence/trace"
@@ -11,7 +10,7 @@ import (
 type header struct {
 	samples     []sample
 	instruments []instrument
-	tools       []string
+	tools       once
 	toolVersion string
 
 	startTime                string
@@ -21,6 +20,24 @@ type header struct {
 type sample struct{ id, name string }
 
 type instrument struct{ id, model, serial string }
+
+// once lists texts in the order in which they first come.
+type once struct {
+	list []string
+	seen map[string]bool
+}
+
+func (o *once) add(text string) {
+	if text == "" || o.seen[text] {
+		return
+	}
+	if o.seen == nil {
+		o.seen = map[string]bool{}
+	}
+	o.seen[text], o.list = true, append(o.list, text)
+}
+
+func (o *once) String() string { return strings.Join(o.list, "; ") }
 
 func (h *header) start(s *scanner, name string) {
 	switch name {
@@ -38,9 +55,8 @@ func (h *header) start(s *scanner, name string) {
 // term takes a term of the software or instrument configuration begun last.
 func (h *header) term(t term, holder string) {
 	if holder == "software" {
-		tool := strings.TrimSpace(t.said() + " " + h.toolVersion)
-		if t.said() != "" && !slices.Contains(h.tools, tool) {
-			h.tools = append(h.tools, tool)
+		if t.said() != "" {
+			h.tools.add(strings.TrimSpace(t.said() + " " + h.toolVersion))
 		}
 		return
 	}
@@ -56,7 +72,7 @@ func (h *header) term(t term, holder string) {
 // of the run, or every one that is listed.
 func (h *header) fill(f *trace.File) {
 	f.StartTime = h.startTime
-	f.Software = strings.Join(h.tools, "; ")
+	f.Software = h.tools.String()
 	for _, x := range h.samples {
 		if x.id != h.runSample && (h.runSample != "" || len(h.samples) > 1) {
 			continue
@@ -65,16 +81,15 @@ func (h *header) fill(f *trace.File) {
 			f.SampleCode = x.id
 		}
 	}
-	var all []string
+	var all once
 	for _, x := range h.instruments {
-		if text := x.String(); x.id == h.runInstrument {
-			f.Instrument = text
+		if x.id == h.runInstrument {
+			f.Instrument = x.String()
 			return
-		} else if text != "" && !slices.Contains(all, text) {
-			all = append(all, text)
 		}
+		all.add(x.String())
 	}
-	f.Instrument = strings.Join(all, "; ")
+	f.Instrument = all.String()
 }
 
 func (i instrument) String() string {

@@ -23,7 +23,8 @@ const (
 var byteOrderMark = []byte("\xef\xbb\xbf")
 
 // Read reads the declared columns. Text is UTF-8, with or without a byte-order mark, with LF or CRLF. Numbers are plain decimals;
-// every point has as many fields as the first; times must increase; empty lines may stand at the end only. The error is a
+// every point has as many fields as the first; times must increase; empty lines may stand at the end only. A last point without
+// a line end may have lost digits, which gives the warning "unfinished-line". The error is a
 // *trace.SyntaxError with line and column (in characters, of the field's start), or says what is wrong with the layout.
 func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	if err := layout.check(); err != nil {
@@ -37,7 +38,8 @@ func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	data = bytes.TrimPrefix(data, byteOrderMark)
 	for len(data) > 0 {
 		var line []byte
-		line, data, _ = bytes.Cut(data, []byte("\n"))
+		line, data, r.ended = bytes.Cut(data, []byte("\n"))
+		r.ended = r.ended || len(bytes.TrimSpace(line)) == 0
 		if err := r.take(bytes.TrimSuffix(line, []byte("\r"))); err != nil {
 			return nil, err
 		}
@@ -49,9 +51,10 @@ type reader struct {
 	name   string
 	layout Layout
 	line   int
-	width  int // fields that a line must have at least
-	fields int // of the first point
-	empty  int // line of an empty line, after which nothing may follow
+	width  int  // fields that a line must have at least
+	fields int  // of the first point
+	empty  int  // line of an empty line, after which nothing may follow
+	ended  bool // whether the line read last has its end
 
 	written   string  // the last time as the file writes it
 	last      float64 // the same as a number, in the file's unit
@@ -170,6 +173,9 @@ func (r *reader) finish() (*trace.File, error) {
 		return nil, r.fail(1, "the end of the file", fmt.Sprintf("points after %d header lines", r.layout.HeaderLines), layoutHint)
 	}
 	file := &trace.File{Format: "delimited text"}
+	if !r.ended {
+		file.Warnings = append(file.Warnings, trace.Warning{Code: "unfinished-line", Detail: fmt.Sprintf("line %d, the last, has no line end: the file may be cut", r.line)})
+	}
 	for i, c := range r.layout.Columns {
 		t := trace.Chromatogram{ID: c.ID, Kind: kind(c.Transition), Transition: c.Transition, TimeMin: slices.Clone(r.time), Intensity: r.intensity[i]}
 		if b := t.Check(); b != nil {
