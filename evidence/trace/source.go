@@ -12,11 +12,14 @@ type Source interface {
 	Size() int64
 }
 
+// maxSize is the most that a source may hold, in bytes: files are read as a whole.
+const maxSize = 1 << 32
+
 // ReadAll returns the whole of a source. A source that holds less than its Size is an error (io.ErrUnexpectedEOF).
 func ReadAll(src Source) ([]byte, error) {
 	size := src.Size()
-	if size < 0 || size > math.MaxInt/2 {
-		return nil, fmt.Errorf("a size of %d bytes: want one that memory can hold", size)
+	if size < 0 || size > min(maxSize, math.MaxInt) {
+		return nil, fmt.Errorf("a size of %d bytes: want at most %d", size, int64(maxSize))
 	}
 	data := make([]byte, size)
 	n, err := src.ReadAt(data, 0)

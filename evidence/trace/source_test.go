@@ -32,7 +32,9 @@ func TestReadAll(t *testing.T) {
 	if _, err := ReadAll(liar{strings.NewReader("some"), 5}); !errors.Is(err, io.ErrUnexpectedEOF) {
 		t.Errorf("a source that ends early: %v", err)
 	}
-	if _, err := ReadAll(liar{strings.NewReader("some"), -1}); err == nil {
-		t.Error("a negative size was accepted")
+	for _, size := range []int64{-1, maxSize + 1, 1 << 62} {
+		if _, err := ReadAll(liar{strings.NewReader("some"), size}); err == nil {
+			t.Errorf("a size of %d was accepted", size)
+		}
 	}
 }

@@ -55,7 +55,7 @@ type Warning struct {
 type File struct {
 	Format        string // "mzML" or "delimited text"
 	FormatVersion string // as the file states it
-	StartTime     string // acquisition start as the file states it (RFC 3339), or empty
+	StartTime     string // acquisition start as the file states it (RFC 3339, without offset where the file gives none), or empty
 	Instrument    string // model and serial number as the file states them, or empty
 	Software      string // acquisition software and version as the file states them, or empty
 	SampleCode    string // sample name or code as the file states it, or empty

@@ -95,6 +95,8 @@ func damages(t testing.TB) []damage {
 		{"two_product_mz", change(param(accTarget, ` value="91.1"`), param(accTarget, ` value="91.1"`)+param(accTarget, ` value="92.1"`)), "the m/z 91.1 and 92.1 for one product"},
 		{"two_polarities", change(param(accPositive, ""), param(accPositive, "")+param(accNegative, "")), "the polarities positive and negative"},
 		{"two_chromatogram_types", change(param("MS:1001473", ""), param("MS:1001473", "")+param("MS:1000235", "")), "the chromatogram types MS:1001473 and MS:1000235"},
+		{"repeated_sample_id", change(`<sample id="s1" name="C-0001"/>`, `<sample id="s1" name="C-0001"/><sample id="s1" name="C-0002"/>`), `the sample id "s1", want an id that no other has`},
+		{"repeated_parameter_group", change("<sampleList", `<referenceableParamGroupList><referenceableParamGroup id="g"/><referenceableParamGroup id="g"/></referenceableParamGroupList><sampleList`), `the parameter group id "g"`},
 		{"second_precursor", change("<product>", "<precursor></precursor><product>"), `a second element "precursor" inside "chromatogram"`},
 		{"unknown_parameter_group", change(param(accPositive, ""), `<referenceableParamGroupRef ref="g"/>`), `a reference to the parameter group "g"`},
 	}...)

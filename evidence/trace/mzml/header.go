@@ -1,6 +1,7 @@
 package mzml
 
 import (
+	"fmt"
 	"strings"
 
 	"assaywrit/evidence/trace"
@@ -13,6 +14,7 @@ type header struct {
 	tools       once
 	toolVersion string
 
+	ids                      map[string]bool // of samples and instruments
 	startTime                string
 	runSample, runInstrument string // ids that the run refers to
 }
@@ -39,17 +41,29 @@ func (o *once) add(text string) {
 
 func (o *once) String() string { return strings.Join(o.list, "; ") }
 
-func (h *header) start(s *scanner, name string) {
+func (h *header) start(s *scanner, name string, at int) error {
 	switch name {
-	case "sample":
-		h.samples = append(h.samples, sample{s.attr("id"), s.attr("name")})
 	case "software":
 		h.toolVersion = s.attr("version")
-	case "instrumentConfiguration":
-		h.instruments = append(h.instruments, instrument{id: s.attr("id")})
+		return nil
 	case "run":
 		h.startTime, h.runSample, h.runInstrument = s.attr("startTimeStamp"), s.attr("sampleRef"), s.attr("defaultInstrumentConfigurationRef")
+		return nil
 	}
+	id := s.attr("id")
+	if id == "" || h.ids[name+" "+id] {
+		return s.fail(at, fmt.Sprintf("the %s id %q", name, id), "an id that no other has", "")
+	}
+	if h.ids == nil {
+		h.ids = map[string]bool{}
+	}
+	h.ids[name+" "+id] = true
+	if name == "sample" {
+		h.samples = append(h.samples, sample{id, s.attr("name")})
+	} else {
+		h.instruments = append(h.instruments, instrument{id: id})
+	}
+	return nil
 }
 
 // term takes a term of the software or instrument configuration begun last.

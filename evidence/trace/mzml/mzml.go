@@ -122,7 +122,7 @@ func (r *reader) start(name string) error {
 	case "cvParam":
 		return r.param(term{s.attr("accession"), s.attr("name"), s.attr("value"), s.attr("unitAccession")}, at)
 	case "sample", "software", "instrumentConfiguration", "run":
-		r.header.start(s, name)
+		return r.header.start(s, name, at)
 	case "chromatogramList":
 		r.declared = s.attr("count")
 	case "chromatogram":
