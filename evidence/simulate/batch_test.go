@@ -91,6 +91,31 @@ func TestOthersStay(t *testing.T) {
 	}
 }
 
+// TestNoiseApart: two channels, and one channel in two injections, share no noise.
+func TestNoiseApart(t *testing.T) {
+	b := quiet()
+	b.Background = Background{Low: 1000, High: 1000, Electronic: 10}
+	b.Substances[0].Ions = nil
+	b.Substances[1].Ions = nil
+	b.Substances[2].Ions = nil
+	for i := range b.Channels {
+		b.Channels[i].StepMin = 1e-4
+	}
+	traces := [][]float64{acquired(t, b, 0)[0].Intensity, acquired(t, b, 0)[1].Intensity, acquired(t, b, 1)[0].Intensity}
+	n := len(traces[0])
+	for i, x := range traces {
+		for _, y := range traces[:i] {
+			r := 0.0
+			for k := range x {
+				r += (x[k] - 1000) * (y[k] - 1000) / 100 / float64(n)
+			}
+			if math.Abs(r) > 5/math.Sqrt(float64(n)) {
+				t.Errorf("trace %d shares its noise with another: correlation %.3f", i, r)
+			}
+		}
+	}
+}
+
 // TestTruthByHand: without scatter the truth is what can be worked out by hand.
 func TestTruthByHand(t *testing.T) {
 	b := quiet()
@@ -132,6 +157,29 @@ func TestSuppression(t *testing.T) {
 	for i := range a {
 		if math.Abs(b[i].Peak.Area/a[i].Peak.Area-0.5) > 1e-12 {
 			t.Errorf("%s: area %g with half the yield, %g before", a[i].Substance, b[i].Peak.Area, a[i].Peak.Area)
+		}
+	}
+}
+
+// TestVolume: the injected volume acts on everything in an injection alike, and on each injection by itself.
+func TestVolume(t *testing.T) {
+	b, exact := quiet(), quiet()
+	b.Scatter.Volume = 0.05
+	var factors []float64
+	for _, i := range []int{1, 2, 4} {
+		want := exact.Truth(i)
+		for k, p := range b.Truth(i) {
+			f := p.Peak.Area / want[k].Peak.Area
+			if k == 0 {
+				factors = append(factors, f)
+			} else if math.Abs(f-factors[len(factors)-1]) > 1e-12 {
+				t.Errorf("injection %d: %s by %.6f, the first substance by %.6f", i, p.Substance, f, factors[len(factors)-1])
+			}
+		}
+	}
+	for i, f := range factors {
+		if math.Abs(f-1) < 1e-6 || math.Abs(f-1) > 0.25 || slices.Contains(factors[:i], f) {
+			t.Errorf("factors %v, want three that scatter by 5 %%", factors)
 		}
 	}
 }

@@ -25,7 +25,7 @@ func moments(x []float64) (mean, variance, lag1 float64) {
 // TestNoise: over a constant signal the mean is the signal, the variance that of the electronics plus Gain times the signal, and
 // neighbours have nothing to do with each other, all within five standard deviations of those statistics for normal noise.
 func TestNoise(t *testing.T) {
-	const n = 60000
+	const n = 200000
 	for _, d := range []Detector{
 		{Baseline: 1000, Electronic: 50},
 		{Baseline: 1000, Gain: 4},

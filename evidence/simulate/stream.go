@@ -1,6 +1,11 @@
-// Package simulate makes chromatograms with a known truth, for the worked example and for rehearsing a method: exponentially
-// modified Gaussian peaks over a drifting baseline, with counting and electronic noise. The same seed gives the same bits on
-// every processor. Times are in minutes, intensities in detector counts, areas in counts·min.
+// Package simulate makes chromatograms with a known truth, for the worked example and for rehearsing a method, and writes them as
+// mzML. A Batch is a sequence of injections: what each vial holds, how its matrix suppresses ionisation (an analyte and its internal
+// standard alike, but for a small part), what comes along from the injection before, and how retention drifts. Its traces are
+// exponentially modified Gaussian peaks over a drifting baseline, with counting and electronic noise.
+//
+// Random numbers come from SplitMix64, one stream for each purpose and name, and become normal deviates by the inverse of the normal
+// distribution: the same seed gives the same bits on every processor. Times are in minutes, intensities in detector counts, areas in
+// counts·min, amounts in ng/mL of what is injected. Left out: saturation, peaks that change shape, isotopes.
 //
 // Simulated data shows how the program works; it never proves that it works rightly.
 package simulate
