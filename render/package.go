@@ -267,7 +267,7 @@ func (d *document) requestAndCustody() {
 	for _, e := range c.Custody {
 		rows = append(rows, []string{when(e.At), e.Item, e.Event, e.From, e.To, e.Location, joined(e.Seal, e.Note)})
 	}
-	d.table(table{columns: []column{{head: "Time", share: 2.5}, {head: "Item", share: 1.5}, {head: "Event", share: 2.3}, {head: "From", share: 0.8}, {head: "To", share: 0.8}, {head: "Place", share: 2.2}, {head: "Seal, note", share: 2.2}}, rows: rows})
+	d.table(table{columns: []column{{head: "Time", share: 2.9}, {head: "Item", share: 1.3}, {head: "Event", share: 2.2}, {head: "From", share: 0.8}, {head: "To", share: 0.8}, {head: "Place", share: 2.2}, {head: "Seal, note", share: 2.2}}, rows: rows})
 	d.heading(1, "people", d.words.get("people-title"))
 	rows = nil
 	for _, p := range c.People {

@@ -8,11 +8,11 @@ func (d *document) batch() {
 	rec := d.in.Record
 	d.chapter("batch", d.words.get("batch-title"))
 	d.paragraph(d.words.get("batch-intro"))
-	columns := []column{{head: "No.", share: 0.8}, {head: "Role", share: 1.9}, {head: "Level, aliquot", share: 1}, {head: "Dilution", share: 1.2, right: true}, {head: "Acquired", share: 3.5}, {head: "By", share: 0.9}}
+	columns := []column{{head: "No.", share: 0.8}, {head: "Role", share: 2.3}, {head: "Level", share: 0.9}, {head: "Dilution", share: 1.3, right: true}, {head: "Acquired", share: 3.5}, {head: "By", share: 0.8}}
 	for _, a := range rec.Analytes {
 		columns = append(columns, column{head: a.Name, share: 1.75, right: true})
 	}
-	columns = append(columns, column{head: "Note", share: 1.9})
+	columns = append(columns, column{head: "Note", share: 2})
 	var rows [][]string
 	var links []string
 	for _, r := range rec.Sequence {
