@@ -124,7 +124,7 @@ func (j *judge) manual() {
 }
 
 func (j *judge) warnings() {
-	c := Check{ID: "case/raw-file-warnings", Group: "case", Title: "Raw files as they say they are", Result: Passed, Sentence: "No raw file contradicts its own index or checksum."}
+	c := Check{ID: "case/raw-file-warnings", Group: "case", Title: "Raw files as they say they are", Result: Passed, Sentence: "No raw file raised a warning when it was read."}
 	for i, inj := range j.rec.Injections {
 		if len(inj.Warnings) > 0 {
 			c.Result = Failed

@@ -58,7 +58,7 @@ type File struct {
 	StartTime     string // acquisition start as the file states it (RFC 3339, without offset where the file gives none), or empty
 	Instrument    string // model and serial number as the file states them, or empty
 	Software      string // acquisition software and version as the file states them, or empty
-	SampleCode    string // sample name or code as the file states it, or empty
+	SampleCode    string // sample name as the file states it, or empty
 	Chromatograms []Chromatogram
 	Warnings      []Warning
 }

@@ -66,20 +66,6 @@ func TestPublishedFiles(t *testing.T) {
 	}
 }
 
-// TestCorpus does the same with a folder of more files and their expected.json. Those may not be copied into this repository.
-func TestCorpus(t *testing.T) {
-	folder := os.Getenv("ASSAYWRIT_CORPUS")
-	if folder == "" {
-		t.Log("no further corpus: ASSAYWRIT_CORPUS may name a folder of further mzML files with an expected.json like that in testdata/mzml")
-		return
-	}
-	n := againstOtherDecoder(t, folder)
-	if n == 0 {
-		t.Error("no chromatogram compared")
-	}
-	t.Logf("%d chromatograms compared", n)
-}
-
 // againstOtherDecoder returns how many chromatograms were compared.
 func againstOtherDecoder(t *testing.T, folder string) int {
 	text, err := os.ReadFile(filepath.Join(folder, "expected.json"))

@@ -91,9 +91,7 @@ func (h *header) fill(f *trace.File) {
 		if x.id != h.runSample && (h.runSample != "" || len(h.samples) > 1) {
 			continue
 		}
-		if f.SampleCode = x.name; x.name == "" {
-			f.SampleCode = x.id
-		}
+		f.SampleCode = x.name // never its id, which converters make up
 	}
 	var all once
 	for _, x := range h.instruments {
