@@ -1,67 +1,83 @@
 package casefile
 
 import (
+	"errors"
 	"fmt"
 	"path"
 	"slices"
 	"strings"
+
+	"assaywrit/evidence/peak"
+	"assaywrit/evidence/strictyaml"
+	"assaywrit/evidence/units"
 )
 
 // checkMethod looks at what method.yaml says about itself.
 func (l *loader) checkMethod() {
 	m := &l.folder.Method
-	if m.Integration.SmoothingPoints%2 == 0 {
-		l.inMethod("integration.smoothing_points", fmt.Sprint(m.Integration.SmoothingPoints), "an odd number", "")
+	var bad *peak.ParameterError
+	if err := m.Integration.Validate(); errors.As(err, &bad) {
+		l.inMethod("integration."+strings.TrimSuffix(bad.Name, "_min"), bad.Got, bad.Want, "")
 	}
-	if m.Batch.InternalStandardLow >= m.Batch.InternalStandardHigh {
-		l.inMethod("batch.internal_standard_low", fmt.Sprint(m.Batch.InternalStandardLow), fmt.Sprintf("less than the upper limit, %g", m.Batch.InternalStandardHigh), "")
+	if b := m.Batch; b.InternalStandardLow >= b.InternalStandardHigh {
+		l.inMethod("batch.internal_standard_low", written(units.Fraction, b.InternalStandardLow, "%"), "less than "+written(units.Fraction, b.InternalStandardHigh, "%")+", the upper limit", "")
 	}
 	ids := map[string]bool{}
 	once := func(key, id string) {
 		if ids[id] {
-			l.inMethod(key, quote(id)+" a second time", "an id that no other compound has", "")
+			l.inMethod(key+".id", quote(id)+" a second time", "an id that no other compound has", "")
 		}
 		ids[id] = true
 	}
-	standards := map[string]bool{}
+	var standards []string
 	for i, s := range m.InternalStandards {
 		key := fmt.Sprintf("internal_standards[%d]", i)
-		once(key+".id", s.ID)
-		standards[s.ID] = false
+		once(key, s.ID)
+		standards = append(standards, s.ID)
 		l.transition(key+".transition", s.Transition)
+		l.retention(key, s.ExpectedRetentionMin, s.RetentionWindowMin)
+		if !slices.ContainsFunc(m.Analytes, func(a Analyte) bool { return a.InternalStandard == s.ID }) {
+			l.inMethod(key+".id", quote(s.ID)+", which no analyte uses", "an internal standard of some analyte", "")
+		}
 	}
 	for i, a := range m.Analytes {
 		key := fmt.Sprintf("analytes[%d]", i)
-		once(key+".id", a.ID)
-		if _, ok := standards[a.InternalStandard]; !ok {
-			l.inMethod(key+".internal_standard", quote(a.InternalStandard), "the id of one of the internal_standards", "")
+		once(key, a.ID)
+		if !slices.Contains(standards, a.InternalStandard) {
+			l.inMethod(key+".internal_standard", quote(a.InternalStandard), "the id of an internal standard: "+strings.Join(standards, ", "), strictyaml.Suggest(a.InternalStandard, standards))
 		}
-		standards[a.InternalStandard] = true
-		l.transition(key+".quantifier", a.Quantifier)
-		for j, q := range a.Qualifiers {
-			l.transition(fmt.Sprintf("%s.qualifiers[%d]", key, j), q)
-			if q == a.Quantifier || slices.Contains(a.Qualifiers[:j], q) {
-				l.inMethod(fmt.Sprintf("%s.qualifiers[%d]", key, j), "a transition a second time", "each transition of an analyte once", "")
-			}
-		}
+		l.transitions(key, a)
+		l.retention(key, a.ExpectedRetentionMin, a.RetentionWindowMin)
 		l.quantification(key, a)
 	}
-	for i, s := range m.InternalStandards {
-		if !standards[s.ID] {
-			l.inMethod(fmt.Sprintf("internal_standards[%d].id", i), quote(s.ID)+", which no analyte uses", "an internal standard of some analyte", "")
-		}
-	}
 	for i, t := range m.Tables {
-		if _, err := path.Match(t.Files, ""); err != nil {
-			l.inMethod(fmt.Sprintf("tables[%d].files", i), quote(t.Files), "a path pattern such as raw/*.csv", "")
-		}
-		if t.Separator == "comma" && t.DecimalMark == "comma" {
-			l.inMethod(fmt.Sprintf("tables[%d].decimal_mark", i), "comma, which is the separator too", "point", "")
+		l.table(fmt.Sprintf("tables[%d]", i), t)
+	}
+}
+
+// retention: a peak elutes after the hold-up time, and the window in which it is sought begins after the injection.
+func (l *loader) retention(key string, expected, window float64) {
+	if void := l.folder.Method.Instrument.VoidTimeMin; void != nil && expected <= *void {
+		l.inMethod(key+".expected_retention", minutes(expected), "more than "+minutes(*void)+", the void time of the instrument", "")
+	}
+	if window >= expected {
+		l.inMethod(key+".retention_window", minutes(window), "less than the expected retention, "+minutes(expected), "it is the half width of the window")
+	}
+}
+
+// transitions: those of one analyte are different from each other.
+func (l *loader) transitions(key string, a Analyte) {
+	l.transition(key+".quantifier", a.Quantifier)
+	for i, q := range a.Qualifiers {
+		place := fmt.Sprintf("%s.qualifiers[%d]", key, i)
+		l.transition(place, q)
+		if q == a.Quantifier || slices.Contains(a.Qualifiers[:i], q) {
+			l.inMethod(place, "a transition a second time", "each transition of an analyte once", "")
 		}
 	}
 }
 
-// transition needs its ions, or the name that the file gives the trace.
+// transition: it needs its ions, or the name that the file gives the trace.
 func (l *loader) transition(key string, t Transition) {
 	if t.TraceID == "" && (t.PrecursorMZ == 0 || t.ProductMZ == 0) {
 		l.inMethod(key, "neither both ions nor a trace_id", "precursor and product, or trace_id", "")
@@ -71,10 +87,10 @@ func (l *loader) transition(key string, t Transition) {
 // quantification: a threshold is compared with a value, and a value needs a calibration and an uncertainty.
 func (l *loader) quantification(key string, a Analyte) {
 	if a.Kind == Threshold && a.Calibration == nil {
-		l.inMethod(key, "no calibration", "a calibration, as the analyte is compared with a threshold", "")
+		l.inMethod(key+".calibration", "no such key", "a calibration, as the analyte is compared with a threshold", "")
 	}
 	if a.Kind == Threshold && a.Uncertainty == nil {
-		l.inMethod(key, "no uncertainty", "an uncertainty, as the analyte is compared with a threshold", "")
+		l.inMethod(key+".uncertainty", "no such key", "an uncertainty, as the analyte is compared with a threshold", "")
 	}
 	if a.Uncertainty == nil {
 		return
@@ -89,100 +105,26 @@ func (l *loader) quantification(key string, a Analyte) {
 	}
 }
 
-func (l *loader) inSequence(row Injection, name, got, want, hint string) {
-	l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: row.Line, Column: row.column(name), Key: name, Got: got, Want: want, Hint: hint})
-}
-
-// checkSequence looks at the rows together, and at the method and the case beside them.
-func (l *loader) checkSequence() {
-	l.nominalColumns()
-	files, ids := map[string]string{}, map[string]bool{}
-	rows := l.folder.Injections
-	for i, row := range rows {
-		folded := strings.ToLower(row.File)
-		if other, twice := files[folded]; twice {
-			l.inSequence(row, "file", quote(row.File)+", which injection "+other+" has too", "a file of its own for each injection", "")
-		}
-		files[folded] = row.ID
-		if ids[row.ID] {
-			l.inSequence(row, "injection", quote(row.ID)+" a second time", "each id once", "")
-		}
-		ids[row.ID] = true
-		if i > 0 && !at(row.AcquiredAt).After(at(rows[i-1].AcquiredAt)) {
-			l.inSequence(row, "acquired", quote(row.AcquiredAt), "a time after "+rows[i-1].AcquiredAt+", that of the injection before", "the rows stand in the order of acquisition")
-		}
-		if !slices.ContainsFunc(l.folder.Case.People, func(p Person) bool { return p.Code == row.Operator }) {
-			l.inSequence(row, "operator", quote(row.Operator), "the code of one of the people in "+CaseFile, "")
-		}
-		l.checkRole(row)
+// table: a layout of delimited text reads each column once.
+func (l *loader) table(key string, t TableLayout) {
+	if _, err := path.Match(t.Files, ""); err != nil {
+		l.inMethod(key+".files", quote(t.Files), "a path pattern such as raw/*.csv", "")
 	}
-	for _, a := range l.folder.Method.Analytes {
-		l.levels(a)
+	if t.Separator == "comma" && t.DecimalMark == "comma" {
+		l.inMethod(key+".decimal_mark", "comma, which is the separator too", "point", "")
 	}
-	if !slices.ContainsFunc(rows, func(r Injection) bool { return r.Role == SampleAliquot }) {
-		l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: 1, Got: "no row with the role sample", Want: "the sample's aliquots"})
-	}
-}
-
-func (l *loader) nominalColumns() {
-	for _, c := range l.header.nominal {
-		if !slices.ContainsFunc(l.folder.Method.Analytes, func(a Analyte) bool { return a.ID == c.analyte }) {
-			l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: 1, Key: l.header.names[c.index], Got: quote(c.analyte), Want: "an analyte of the method: " + analyteIDs(l.folder.Method)})
+	for i, c := range t.Columns {
+		place := fmt.Sprintf("%s.columns[%d]", key, i)
+		if c.Column == t.TimeColumn {
+			l.inMethod(place+".column", fmt.Sprint(c.Column)+", which is the time column", "another column", "")
 		}
-	}
-}
-
-func (l *loader) checkRole(row Injection) {
-	switch row.Role {
-	case Calibrator, Control:
-		for _, a := range l.folder.Method.Analytes {
-			l.checkNominal(row, a)
-		}
-	case Excluded:
-		if row.Note == "" {
-			l.inSequence(row, "note", "nothing", "the reason why the injection is excluded", "")
-		}
-	case SampleAliquot:
-		if row.SampleCode != l.folder.Case.Sample.Code {
-			l.inSequence(row, "sample_code", quote(row.SampleCode), quote(l.folder.Case.Sample.Code)+", the code of the sample in "+CaseFile, "")
-		}
-		fallthrough
-	default:
-		for _, n := range row.Nominal {
-			if n.NGPerML > 0 {
-				l.inSequence(row, "nominal "+n.Analyte, fmt.Sprintf("%g ng/mL in a row of role %s", n.NGPerML, row.Role), "an empty field: only calibrators and controls have nominal amounts", "")
+		for _, other := range t.Columns[:i] {
+			if c.Column == other.Column {
+				l.inMethod(place+".column", fmt.Sprint(c.Column)+" a second time", "each column once", "")
+			}
+			if c.ID == other.ID {
+				l.inMethod(place+".id", quote(c.ID)+" a second time", "each name once", "")
 			}
 		}
-	}
-}
-
-func (l *loader) checkNominal(row Injection, a Analyte) {
-	i := slices.IndexFunc(row.Nominal, func(n Nominal) bool { return n.Analyte == a.ID })
-	name := "nominal " + a.ID
-	switch {
-	case i < 0 && row.Role == Calibrator && a.Calibration == nil:
-	case i < 0:
-		l.inSequence(row, name, "nothing", fmt.Sprintf("the amount of %s in this %s", a.ID, row.Role), "0 where it holds none")
-	case row.Role == Calibrator && a.Calibration != nil && a.Calibration.Weighting != "none" && row.Nominal[i].NGPerML <= 0:
-		l.inSequence(row, name, fmt.Sprintf("%g", row.Nominal[i].NGPerML), fmt.Sprintf("an amount above zero, as the weights are %s", a.Calibration.Weighting),
-			"a zero calibrator has the role zero and is not fitted")
-	}
-}
-
-// levels: a line with a test of its fit needs three different amounts.
-func (l *loader) levels(a Analyte) {
-	if a.Calibration == nil {
-		return
-	}
-	amounts := map[float64]bool{}
-	for _, row := range l.folder.Injections {
-		for _, n := range row.Nominal {
-			if row.Role == Calibrator && n.Analyte == a.ID {
-				amounts[n.NGPerML] = true
-			}
-		}
-	}
-	if len(amounts) < 3 {
-		l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: 1, Key: "nominal " + a.ID, Got: fmt.Sprintf("calibrators at %d different amounts", len(amounts)), Want: "at least three"})
 	}
 }

@@ -1,12 +1,12 @@
 package casefile
 
 import (
-	"errors"
 	"fmt"
 	"io/fs"
 	"path"
 	"slices"
 	"strings"
+	"time"
 
 	"assaywrit/evidence/strictyaml"
 )
@@ -22,36 +22,22 @@ type Problem = strictyaml.Problem
 
 // Load reads and checks the case folder that fsys is. The error is Problems, with everything that is wrong in all of its files,
 // or what kept a file from being read.
+//
+// Load looks at form and at what the files say about each other; the raw files are not opened. What depends on criteria, such as a
+// reference material past its date or too few controls, is not refused here: it is part of the finding.
 func Load(fsys fs.FS) (*Folder, error) {
-	data, err := fs.ReadFile(fsys, CaseFile)
-	if errors.Is(err, fs.ErrNotExist) {
-		return nil, Problems{{File: CaseFile, Got: "no such file", Want: "the case's own description",
-			Hint: "a case folder holds case.yaml, a method, a sequence, raw/ and documents/; assaywrit demo writes an example"}}
-	}
-	if err != nil {
-		return nil, err
-	}
 	l := loader{fsys: fsys, folder: &Folder{}}
-	l.caseDoc, l.problems = strictyaml.Bind(CaseFile, data, &l.folder.Case)
-	if l.caseDoc == nil {
-		return nil, l.problems
-	}
-	if err := l.method(); err != nil {
+	var err error
+	if l.present, l.problems, err = listFiles(fsys); err != nil {
 		return nil, err
 	}
-	if err := l.sequence(); err != nil {
+	if !slices.Contains(l.present, CaseFile) {
+		return nil, Problems{noCase(l.present)}
+	}
+	if err := l.readAll(); err != nil {
 		return nil, err
 	}
-	if len(l.problems) == 0 { // what follows needs files that are whole by themselves
-		l.checkCase()
-		l.checkCustody()
-		l.checkMethod()
-		l.checkSequence()
-		l.checkManual()
-	}
-	if err := l.checkFiles(); err != nil {
-		return nil, err
-	}
+	l.check()
 	if len(l.problems) > 0 {
 		l.problems.Sort()
 		return nil, l.problems
@@ -59,22 +45,50 @@ func Load(fsys fs.FS) (*Folder, error) {
 	return l.folder, nil
 }
 
+// A loader gathers the files of a folder and their problems.
 type loader struct {
 	fsys      fs.FS
 	folder    *Folder
+	present   []string // paths of all files that belong to the folder, sorted
 	caseDoc   *strictyaml.Document
 	methodDoc *strictyaml.Document
 	header    sequenceHeader
 	problems  Problems
+
+	caseWhole, methodWhole, sequenceWhole bool // read without a problem
 }
 
-func (l *loader) inCase(key, got, want, hint string) {
-	l.problems = append(l.problems, l.caseDoc.Problem(key, got, want, hint))
-}
-
-func (l *loader) inMethod(key, got, want, hint string) {
-	p := l.methodDoc.Problem(key, got, want, hint)
-	l.problems = append(l.problems, p)
+// readAll reads case.yaml and the two files that it names.
+func (l *loader) readAll() error {
+	data, err := fs.ReadFile(l.fsys, CaseFile)
+	if err != nil {
+		return err
+	}
+	before := len(l.problems)
+	doc, problems := strictyaml.Bind(CaseFile, data, &l.folder.Case)
+	l.caseDoc = doc
+	l.problems = append(l.problems, problems...)
+	l.caseWhole = len(l.problems) == before
+	if doc == nil {
+		return nil // it names no other file
+	}
+	if data, err = l.read("method", l.folder.Case.MethodFile); err != nil {
+		return err
+	}
+	if data != nil {
+		l.methodDoc, problems = strictyaml.Bind(l.folder.Case.MethodFile, data, &l.folder.Method)
+		l.problems = append(l.problems, problems...)
+		l.methodWhole = len(problems) == 0
+	}
+	if data, err = l.read("sequence", l.folder.Case.SequenceFile); err != nil {
+		return err
+	}
+	if data != nil {
+		l.folder.Injections, l.header, problems = readSequence(l.folder.Case.SequenceFile, data)
+		l.problems = append(l.problems, problems...)
+		l.sequenceWhole = len(problems) == 0
+	}
+	return nil
 }
 
 // read returns a file that the case names, or nil with a problem at the key that names it.
@@ -82,65 +96,84 @@ func (l *loader) read(key, name string) ([]byte, error) {
 	if name == "" {
 		return nil, nil // the key has its own problem already
 	}
-	data, err := fs.ReadFile(l.fsys, name)
-	if errors.Is(err, fs.ErrNotExist) {
-		l.inCase(key, fmt.Sprintf("%q, which is not there", name), "the path of a file in the case folder", "")
+	if got, hint := l.missing(name); got != "" {
+		l.inCase(key, got, "the path of a file in the case folder", hint)
 		return nil, nil
 	}
-	return data, err
-}
-
-func (l *loader) method() error {
-	data, err := l.read("method", l.folder.Case.MethodFile)
-	if data == nil || err != nil {
-		return err
+	info, err := fs.Stat(l.fsys, name)
+	if err != nil {
+		return nil, err
 	}
-	doc, problems := strictyaml.Bind(l.folder.Case.MethodFile, data, &l.folder.Method)
-	l.methodDoc = doc
-	l.problems = append(l.problems, problems...)
-	return nil
-}
-
-func (l *loader) sequence() error {
-	data, err := l.read("sequence", l.folder.Case.SequenceFile)
-	if data == nil || err != nil {
-		return err
+	if info.Size() > strictyaml.MaxBytes {
+		l.inCase(key, fmt.Sprintf("%q, a file of %d bytes", name, info.Size()), fmt.Sprintf("a file of at most %d bytes", strictyaml.MaxBytes), "")
+		return nil, nil
 	}
-	rows, header, problems := readSequence(l.folder.Case.SequenceFile, data)
-	l.folder.Injections, l.header = rows, header
-	l.problems = append(l.problems, problems...)
-	return nil
+	return fs.ReadFile(l.fsys, name)
 }
 
-// ignored are files that systems leave in folders; they belong to no case.
-var ignored = []string{"Thumbs.db", "desktop.ini"}
+// check looks at each file that is whole by itself, then at those that are whole together.
+func (l *loader) check() {
+	if l.caseDoc == nil {
+		return
+	}
+	if l.caseWhole {
+		l.checkPeople()
+		l.checkTimes()
+		l.checkCustody()
+		l.checkCriteria()
+	}
+	if l.methodWhole {
+		l.checkMethod()
+	}
+	if l.sequenceWhole {
+		l.checkRows()
+	}
+	if l.caseWhole && l.methodWhole {
+		l.checkRequest()
+	}
+	if l.caseWhole && l.sequenceWhole {
+		l.checkRowsOfCase()
+	}
+	if l.methodWhole && l.sequenceWhole {
+		l.checkNominals()
+	}
+	if l.caseWhole && l.methodWhole && l.sequenceWhole {
+		l.checkManual()
+	}
+	l.checkFiles()
+}
 
-// Files lists the paths of every file that belongs to the case, sorted: all that is in the folder but hidden files and what
-// file browsers leave behind.
-func (f *Folder) Files(fsys fs.FS) ([]string, error) { return listFiles(fsys) }
+func (l *loader) inCase(key, got, want, hint string) {
+	l.problems = append(l.problems, l.caseDoc.Problem(key, got, want, hint))
+}
 
-func listFiles(fsys fs.FS) ([]string, error) {
-	var paths []string
-	err := fs.WalkDir(fsys, ".", func(p string, d fs.DirEntry, err error) error {
-		name := path.Base(p)
+func (l *loader) inMethod(key, got, want, hint string) {
+	l.problems = append(l.problems, l.methodDoc.Problem(key, got, want, hint))
+}
+
+// noCase is the one problem of a folder without case.yaml.
+func noCase(present []string) Problem {
+	p := Problem{File: CaseFile, Got: "no such file", Want: "the case's own description",
+		Hint: "a case folder holds case.yaml, a method, a sequence, raw/ and documents/; assaywrit demo writes an example"}
+	for _, name := range present {
 		switch {
-		case err != nil:
-			return err
-		case p == ".":
-			return nil
-		case strings.HasPrefix(name, ".") || slices.Contains(ignored, name):
-			if d.IsDir() {
-				return fs.SkipDir
-			}
-			return nil
-		case d.IsDir():
-			return nil
-		case !d.Type().IsRegular():
-			return &Problem{File: p, Got: "a link or special file", Want: "a plain file", Hint: "put the file itself into the folder"}
+		case path.Base(name) == CaseFile:
+			p.Hint = fmt.Sprintf("there is one in %s/: give that folder", path.Dir(name))
+			return p
+		case strings.EqualFold(name, CaseFile) || strings.EqualFold(name, "case.yml"):
+			p.Hint = fmt.Sprintf("there is %s: name it %s", name, CaseFile)
 		}
-		paths = append(paths, p)
-		return nil
-	})
-	slices.Sort(paths)
-	return paths, err
+	}
+	return p
 }
+
+// at is the time that a text states; the binder has checked it.
+func at(text string) time.Time {
+	t, err := strictyaml.ParseTime(text)
+	if err != nil {
+		panic("casefile: internal error: unchecked time: " + err.Error())
+	}
+	return t
+}
+
+func quote(s string) string { return strictyaml.Quote(s) }

@@ -1,234 +1,146 @@
 package casefile
 
 import (
-	"bytes"
 	"encoding/csv"
 	"errors"
 	"fmt"
 	"io"
-	"io/fs"
-	"regexp"
 	"slices"
 	"strings"
-	"time"
-	"unicode/utf16"
 	"unicode/utf8"
 
+	"assaywrit/evidence/strictyaml"
 	"assaywrit/evidence/units"
-)
-
-// sequenceColumns are the columns of sequence.csv that are not nominal amounts; the required ones come first.
-var (
-	requiredColumns = []string{"injection", "file", "role", "acquired", "operator"}
-	optionalColumns = []string{"level", "aliquot", "sample_code", "dilution", "note"}
 )
 
 // roles that a row may have.
 var roles = []Role{SolventBlank, MatrixBlank, ZeroCalibrator, Calibrator, Control, NegativeControl, CarryoverBlank, SampleAliquot, Excluded}
 
-// A sequenceHeader tells which column holds what.
-type sequenceHeader struct {
-	file      string
-	separator rune
-	columns   map[string]int // by name
-	nominal   []nominalColumn
-	names     []string // as written
-}
-
-type nominalColumn struct {
-	index   int
-	analyte string
-	unit    string
-}
-
-var nominalName = regexp.MustCompile(`(?i)^nominal\s+([a-z0-9-]+)\s*[\[(]([^\])]*)[\])]$`)
-
 // readSequence reads sequence.csv as spreadsheet programs save it: UTF-8 (with or without byte-order mark) or UTF-16; separated
 // by comma, semicolon or tab; any line end; quoted fields; a decimal comma where the separator is no comma; empty rows and
-// columns at the end.
+// columns at the end. The problems list everything that is wrong with its form; then the rows are not to be used.
 func readSequence(file string, data []byte) ([]Injection, sequenceHeader, Problems) {
-	h := sequenceHeader{file: file, columns: map[string]int{}}
+	h := sequenceHeader{columns: map[string]int{}, places: map[string]int{}}
 	text, problem := sequenceText(file, data)
 	if problem != nil {
 		return nil, h, Problems{*problem}
 	}
-	if h.separator, problem = separatorOf(file, text); problem != nil {
+	separator, problem := separatorOf(file, text)
+	if problem != nil {
 		return nil, h, Problems{*problem}
 	}
-	t := sequenceReader{header: &h, r: csv.NewReader(strings.NewReader(text))}
-	t.r.Comma = h.separator
-	t.r.FieldsPerRecord = -1
-	t.r.TrimLeadingSpace = h.separator != '\t'
-	return t.rows(), h, t.problems
+	t := sequenceReader{file: file, separator: separator, header: &h}
+	records := t.records(text)
+	if len(records) == 0 {
+		return nil, h, t.problems
+	}
+	if t.readHeader(records[0]); len(t.problems) > 0 {
+		return nil, h, t.problems
+	}
+	t.mark = t.decimalMark(records[1:])
+	var rows []Injection
+	for _, t.record = range records[1:] {
+		rows = append(rows, t.row())
+	}
+	if len(rows) == 0 {
+		t.report(1, 1, "", "a header without rows", "one line for each injection", "")
+	}
+	t.problems.Sort()
+	return rows, h, t.problems
 }
 
-// sequenceText decodes the file's text.
-func sequenceText(file string, data []byte) (string, *Problem) {
-	if len(data) >= 2 && (data[0] == 0xff && data[1] == 0xfe || data[0] == 0xfe && data[1] == 0xff) {
-		big := data[0] == 0xfe
-		words := make([]uint16, 0, len(data)/2)
-		for i := 2; i+1 < len(data); i += 2 {
-			w := uint16(data[i]) | uint16(data[i+1])<<8
-			if big {
-				w = w<<8 | w>>8
-			}
-			words = append(words, w)
-		}
-		data = []byte(string(utf16.Decode(words)))
-	}
-	data = bytes.TrimPrefix(data, []byte("\xef\xbb\xbf"))
-	if !utf8.Valid(data) {
-		line := 1 + bytes.Count(data[:firstInvalid(data)], []byte("\n"))
-		return "", &Problem{File: file, Line: line, Got: "text that is neither UTF-8 nor UTF-16", Want: "UTF-8",
-			Hint: "in the spreadsheet program, save as \"CSV UTF-8\""}
-	}
-	if len(bytes.TrimSpace(data)) == 0 {
-		return "", &Problem{File: file, Line: 1, Column: 1, Got: "an empty file", Want: "a header line and one line for each injection"}
-	}
-	text := strings.ReplaceAll(string(data), "\r\n", "\n")
-	return strings.ReplaceAll(text, "\r", "\n"), nil
-}
-
-func firstInvalid(data []byte) int {
-	for i := 0; i < len(data); {
-		r, n := utf8.DecodeRune(data[i:])
-		if r == utf8.RuneError && n == 1 {
-			return i
-		}
-		i += n
-	}
-	return len(data)
-}
-
-// separatorOf finds the separator from the header line: the one of the three that stands in it.
-func separatorOf(file, text string) (rune, *Problem) {
-	line, _, _ := strings.Cut(text, "\n")
-	var found []rune
-	for _, c := range []rune{',', ';', '\t'} {
-		if strings.ContainsRune(line, c) {
-			found = append(found, c)
-		}
-	}
-	if len(found) != 1 {
-		return 0, &Problem{File: file, Line: 1, Column: 1, Got: fmt.Sprintf("a header line with %d kinds of separators", len(found)),
-			Want: "one of comma, semicolon or tab between all names"}
-	}
-	return found[0], nil
+// A record is one line of the table: its fields without blanks around them, and their places.
+type record struct {
+	line   int
+	fields []string
+	places []int // columns, counting characters from 1
+	end    int   // the column after the last character
 }
 
 type sequenceReader struct {
-	header   *sequenceHeader
-	r        *csv.Reader
-	record   []string
-	line     int
-	problems Problems
+	file      string
+	separator rune
+	header    *sequenceHeader
+	mark      rune // before the decimals of the file's numbers; 0 where no number shows which
+	record    record
+	problems  Problems
 }
 
 func (t *sequenceReader) report(line, column int, key, got, want, hint string) {
-	t.problems = append(t.problems, Problem{File: t.header.file, Line: line, Column: column, Key: key, Got: got, Want: want, Hint: hint})
+	t.problems = append(t.problems, Problem{File: t.file, Line: line, Column: column, Key: key, Got: got, Want: want, Hint: hint})
 }
 
-func (t *sequenceReader) rows() []Injection {
-	record, err := t.r.Read()
-	if err != nil {
-		t.csvError(err)
-		return nil
+// records takes the text apart. Rows without any text are left out: spreadsheets leave empty ones.
+func (t *sequenceReader) records(text string) []record {
+	lines := strings.Split(text, "\n")
+	place := func(line, column int) int { // the reader counts bytes
+		s := lines[line-1]
+		return utf8.RuneCountInString(s[:min(column-1, len(s))]) + 1
 	}
-	t.readHeader(record)
-	if len(t.problems) > 0 {
-		return nil
-	}
-	var rows []Injection
+	r := csv.NewReader(strings.NewReader(text))
+	r.Comma, r.FieldsPerRecord, r.TrimLeadingSpace = t.separator, -1, t.separator != '\t'
+	var all []record
 	for {
-		t.record, err = t.r.Read()
-		if errors.Is(err, io.EOF) {
-			break
+		fields, err := r.Read()
+		var bad *csv.ParseError
+		switch {
+		case errors.Is(err, io.EOF):
+			return all
+		case errors.As(err, &bad):
+			t.report(bad.Line, place(bad.Line, bad.Column), "", csvFault(bad), "quotation marks around the whole field or none", "a quotation mark inside a quoted field is written twice")
+			return nil
+		case err != nil:
+			t.report(1, 1, "", err.Error(), "a table", "")
+			return nil
 		}
-		if err != nil {
-			t.csvError(err)
-			break
+		rec := record{fields: fields}
+		rec.line, _ = r.FieldPos(0)
+		for i := range fields {
+			line, column := r.FieldPos(i)
+			rec.places = append(rec.places, place(line, column))
+			fields[i] = strings.TrimSpace(fields[i])
 		}
-		t.line, _ = t.r.FieldPos(0)
-		if strings.TrimSpace(strings.Join(t.record, "")) == "" {
-			continue // spreadsheets leave empty rows
-		}
-		rows = append(rows, t.row())
-	}
-	if len(rows) == 0 && len(t.problems) == 0 {
-		t.report(2, 1, "", "no injection", "one line for each injection", "")
-	}
-	return rows
-}
-
-func (t *sequenceReader) csvError(err error) {
-	var p *csv.ParseError
-	if errors.As(err, &p) {
-		t.report(p.Line, p.Column, "", p.Err.Error(), "fields with quotes at both ends or none", "")
-		return
-	}
-	t.report(1, 1, "", err.Error(), "a header line", "")
-}
-
-// readHeader understands the column names, in any order and case.
-func (t *sequenceReader) readHeader(names []string) {
-	for len(names) > 0 && strings.TrimSpace(names[len(names)-1]) == "" {
-		names = names[:len(names)-1]
-	}
-	h := t.header
-	h.names = names
-	for i, name := range names {
-		_, column := t.r.FieldPos(i)
-		key := strings.ToLower(strings.TrimSpace(name))
-		switch m := nominalName.FindStringSubmatch(strings.TrimSpace(name)); {
-		case m != nil:
-			analyte, unit := strings.ToLower(m[1]), strings.TrimSpace(m[2])
-			if !units.Concentration.Has(unit) {
-				t.report(1, column, name, fmt.Sprintf("unit %q", unit), units.Concentration.Want(), "write the unit in brackets: nominal "+analyte+" [ng/mL]")
-			}
-			if slices.ContainsFunc(h.nominal, func(c nominalColumn) bool { return c.analyte == analyte }) {
-				t.report(1, column, name, "a second column for "+analyte, "one column for each analyte", "")
-			}
-			h.nominal = append(h.nominal, nominalColumn{i, analyte, unit})
-		case strings.HasPrefix(key, "nominal"):
-			t.report(1, column, name, fmt.Sprintf("%q", name), "the analyte's id and the unit in brackets, such as nominal salbutamol [ng/mL]", "")
-		case slices.Contains(requiredColumns, key) || slices.Contains(optionalColumns, key):
-			if _, twice := h.columns[key]; twice {
-				t.report(1, column, name, "a second column of that name", "each column once", "")
-			}
-			h.columns[key] = i
-		default:
-			t.report(1, column, name, fmt.Sprintf("the unknown column %q", name),
-				"one of: "+strings.Join(append(slices.Clone(requiredColumns), optionalColumns...), ", ")+", nominal ANALYTE [UNIT]", "")
-		}
-	}
-	for _, name := range requiredColumns {
-		if _, ok := h.columns[name]; !ok {
-			t.report(1, 1, name, "no such column", "a column "+name, "")
+		rec.end = utf8.RuneCountInString(lines[rec.line-1]) + 1
+		if strings.Join(fields, "") != "" {
+			all = append(all, rec)
 		}
 	}
 }
 
-// field returns the text of a column and its place in the line.
+func csvFault(err *csv.ParseError) string {
+	if errors.Is(err, csv.ErrBareQuote) {
+		return "a quotation mark inside a field without them"
+	}
+	if err.Line > err.StartLine {
+		return fmt.Sprintf("a quotation mark that is opened in line %d and not closed, or followed by text", err.StartLine)
+	}
+	return "a quotation mark that is not closed, or followed by text"
+}
+
+// field returns the text of a column and its place in the line; beyond the end of a short line it is empty.
 func (t *sequenceReader) field(index int) (string, int) {
-	if index >= len(t.record) {
-		return "", 0
+	if index >= len(t.record.fields) {
+		return "", t.record.end
 	}
-	_, column := t.r.FieldPos(index)
-	return strings.TrimSpace(t.record[index]), column
+	return t.record.fields[index], t.record.places[index]
 }
 
 func (t *sequenceReader) named(name string) (string, int) {
 	i, ok := t.header.columns[name]
 	if !ok {
-		return "", 0
+		return "", 1
 	}
 	return t.field(i)
 }
 
 func (t *sequenceReader) row() Injection {
-	row := Injection{Line: t.line, Dilution: 1, columns: map[string]int{}}
-	for name := range t.header.columns {
-		_, row.columns[name] = t.named(name)
+	row := Injection{Line: t.record.line, Dilution: 1, columns: map[string]int{}}
+	for _, name := range slices.Concat(requiredColumns, optionalColumns) {
+		var text string
+		text, row.columns[name] = t.named(name)
+		if strings.Contains(text, "\n") && name != "note" {
+			t.report(row.Line, row.columns[name], name, quote(text), "text in one line", "")
+		}
 	}
 	for _, c := range t.header.nominal {
 		_, row.columns["nominal "+c.analyte] = t.field(c.index)
@@ -236,27 +148,22 @@ func (t *sequenceReader) row() Injection {
 	row.ID = t.needed("injection", "an id, unique in the sequence")
 	row.File = t.path()
 	row.Role = t.role()
+	row.AcquiredAt = t.time()
 	row.Operator = t.needed("operator", "the code of a person")
 	row.Level, _ = t.named("level")
 	row.Aliquot, _ = t.named("aliquot")
 	row.SampleCode, _ = t.named("sample_code")
 	row.Note, _ = t.named("note")
-	acquired, column := t.named("acquired")
-	if _, err := time.Parse(time.RFC3339, acquired); err != nil {
-		t.report(t.line, column, "acquired", fmt.Sprintf("%q", acquired), `a time with its offset, such as "2026-03-18T08:15:00+01:00"`,
-			"spreadsheet programs change times: format the column as text")
-	}
-	row.AcquiredAt = acquired
 	if text, column := t.named("dilution"); text != "" {
-		v, err := units.ParseNumber(t.decimal(text))
+		v, hint, err := t.number(text, units.ParseNumber)
 		if err != nil || !(v > 0) {
-			t.report(t.line, column, "dilution", fmt.Sprintf("%q", text), "a factor above zero, such as 2", "")
+			t.report(row.Line, column, "dilution", quote(text), "a factor above zero, such as 2", hint)
 		}
 		row.Dilution = v
 	}
 	t.nominals(&row)
-	if extra := len(t.record) - len(t.header.names); extra > 0 && strings.TrimSpace(strings.Join(t.record[len(t.header.names):], "")) != "" {
-		t.report(t.line, 0, "", fmt.Sprintf("%d fields", len(t.record)), fmt.Sprintf("%d, as in the header", len(t.header.names)), "quote a field that holds the separator")
+	if n := len(t.header.names); len(t.record.fields) > n && strings.Join(t.record.fields[n:], "") != "" {
+		t.report(row.Line, t.record.places[n], "", fmt.Sprintf("%d fields", len(t.record.fields)), fmt.Sprintf("%d, as in the header", n), "quote a field that holds the separator")
 	}
 	return row
 }
@@ -264,17 +171,16 @@ func (t *sequenceReader) row() Injection {
 func (t *sequenceReader) needed(name, want string) string {
 	text, column := t.named(name)
 	if text == "" {
-		t.report(t.line, column, name, "nothing", want, "")
+		t.report(t.record.line, column, name, "nothing", want, "")
 	}
 	return text
 }
 
 func (t *sequenceReader) path() string {
 	text, column := t.named("file")
-	p := strings.ReplaceAll(text, `\`, "/")
-	if !fs.ValidPath(p) || p == "." || strings.Contains(p, ":") {
-		t.report(t.line, column, "file", fmt.Sprintf("%q", text), "the path of a file inside the case folder, such as raw/010.mzML", "")
-		return ""
+	p, err := strictyaml.ParsePath(text)
+	if err != nil {
+		t.report(t.record.line, column, "file", quote(text), "the path of a file inside the case folder, such as raw/010.mzML", strictyaml.PathHint(text))
 	}
 	return p
 }
@@ -286,9 +192,21 @@ func (t *sequenceReader) role() Role {
 		for i, r := range roles {
 			names[i] = string(r)
 		}
-		t.report(t.line, column, "role", fmt.Sprintf("%q", text), "one of: "+strings.Join(names, ", "), "")
+		t.report(t.record.line, column, "role", quote(text), "one of: "+strings.Join(names, ", "), strictyaml.Suggest(text, names))
 	}
 	return Role(text)
+}
+
+func (t *sequenceReader) time() string {
+	text, column := t.named("acquired")
+	if _, err := strictyaml.ParseTime(text); err != nil {
+		hint := "spreadsheet programs change times: format the column as text before typing"
+		if h := strictyaml.TimeHint(text); h != "" {
+			hint = h + "; " + hint
+		}
+		t.report(t.record.line, column, "acquired", quote(text), `a time with its offset, such as "2026-03-18T08:15:00+01:00"`, hint)
+	}
+	return text
 }
 
 func (t *sequenceReader) nominals(row *Injection) {
@@ -297,19 +215,11 @@ func (t *sequenceReader) nominals(row *Injection) {
 		if text == "" {
 			continue
 		}
-		v, err := units.Concentration.ParseIn(t.decimal(text), c.unit)
+		v, hint, err := t.number(text, func(s string) (float64, error) { return units.Concentration.ParseIn(s, c.unit) })
 		if err != nil || v < 0 {
-			t.report(t.line, column, "nominal "+c.analyte, fmt.Sprintf("%q", text), "a number of at least 0, without its unit (the header has it)", "")
+			t.report(row.Line, column, "nominal "+c.analyte, quote(text), "a number of at least 0, without its unit (the header has it)", hint)
 			continue
 		}
 		row.Nominal = append(row.Nominal, Nominal{Analyte: c.analyte, NGPerML: v})
 	}
-}
-
-// decimal turns a decimal comma into a point where the comma is not the separator.
-func (t *sequenceReader) decimal(text string) string {
-	if t.header.separator != ',' && strings.Count(text, ",") == 1 && !strings.Contains(text, ".") {
-		return strings.Replace(text, ",", ".", 1)
-	}
-	return text
 }

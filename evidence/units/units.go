@@ -115,8 +115,8 @@ const (
 	gapPattern    = `[ \u00a0\u2009\u202f]*` // blanks, thin and unbreakable ones too
 )
 
-// Pattern is a regular expression (ECMA 262) for the texts that the family accepts.
-func (f Family) Pattern() string {
+// SymbolPattern is a regular expression (ECMA 262), without anchors, for the symbols of the family.
+func (f Family) SymbolPattern() string {
 	names := make([]string, 0, len(f.units))
 	for _, u := range f.units {
 		name := u.symbol
@@ -125,7 +125,12 @@ func (f Family) Pattern() string {
 		}
 		names = append(names, strings.ReplaceAll(name, "L", "[lL]"))
 	}
-	all := numberPattern + gapPattern + "(" + strings.Join(names, "|") + ")"
+	return "(" + strings.Join(names, "|") + ")"
+}
+
+// Pattern is a regular expression (ECMA 262) for the texts that the family accepts.
+func (f Family) Pattern() string {
+	all := numberPattern + gapPattern + f.SymbolPattern()
 	if f.bare {
 		all = "(" + barePattern + "|" + all + ")"
 	}
