@@ -16,7 +16,7 @@ func (l *loader) inSequence(row Injection, name, got, want, hint string) {
 
 // inHeader adds a problem at the name of a column.
 func (l *loader) inHeader(name, got, want, hint string) {
-	l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: 1, Column: max(1, l.header.places[name]), Key: name, Got: got, Want: want, Hint: hint})
+	l.problems = append(l.problems, Problem{File: l.folder.Case.SequenceFile, Line: l.header.line, Column: max(1, l.header.places[name]), Key: name, Got: got, Want: want, Hint: hint})
 }
 
 // checkRows looks at the rows together: each injection once, with a file of its own, in order of time.

@@ -193,6 +193,29 @@ func TestFiles(t *testing.T) {
 	}
 }
 
+// FuzzLoad: whatever the three files hold, the folder is accepted or refused, never more.
+func FuzzLoad(f *testing.F) {
+	f.Add(smallCase, smallMethod, smallSequence)
+	f.Add(strings.ReplaceAll(smallCase, "method.yaml", "case.yaml"), smallMethod, separated(";"))
+	f.Add(strings.ReplaceAll(smallCase, "P-2", "P-1"), strings.ReplaceAll(smallMethod, "salbutamol", "x"), strings.ReplaceAll(smallSequence, "raw/", "../"))
+	f.Fuzz(func(t *testing.T, c, m, s string) {
+		fsys := small()
+		put(fsys, "case.yaml", c)
+		put(fsys, "method.yaml", m)
+		put(fsys, "sequence.csv", s)
+		folder, err := Load(fsys)
+		var problems Problems
+		if (folder == nil) != (err != nil) || (err != nil && !errors.As(err, &problems)) {
+			t.Errorf("folder %v, error %v", folder, err)
+		}
+		for _, p := range problems {
+			if p.File == "" || p.Got == "" || p.Want == "" {
+				t.Errorf("a problem without words: %+v", p)
+			}
+		}
+	})
+}
+
 // sameFolder compares folders without the places of fields.
 func sameFolder(a, b *Folder) string {
 	return cmp.Diff(a, b, cmpopts.IgnoreUnexported(Injection{}))

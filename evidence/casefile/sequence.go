@@ -32,6 +32,9 @@ func readSequence(file string, data []byte) ([]Injection, sequenceHeader, Proble
 	t := sequenceReader{file: file, separator: separator, header: &h}
 	records := t.records(text)
 	if len(records) == 0 {
+		if len(t.problems) == 0 {
+			t.report(1, 1, "", "separators alone", "a header line and one line for each injection", "")
+		}
 		return nil, h, t.problems
 	}
 	if t.readHeader(records[0]); len(t.problems) > 0 {

@@ -92,6 +92,7 @@ func TestNotASequence(t *testing.T) {
 		{"empty", "", 1, 1, "an empty file"},
 		{"blank", "\ufeff \r\n\r\n", 1, 1, "an empty file"},
 		{"header alone", strings.SplitAfter(smallSequence, "\n")[0], 1, 1, "one line for each injection"},
+		{"separators alone", ";;\n;;\n", 1, 1, "separators alone"},
 		{"no separator", "injection\nB1\n", 1, 1, "without a separator"},
 		{"two separators", strings.Replace(smallSequence, "file,role", "file;role", 1), 1, 15, `both ',' and ';'`},
 		{"Windows-1252", strings.Replace(smallSequence, "low", "\xb5g", 1), 3, 27, "CSV UTF-8"},
@@ -136,7 +137,7 @@ func TestPlacesInCharacters(t *testing.T) {
 
 // FuzzSequence: any bytes are accepted or refused, never more; problems have places inside the file; what is accepted is whole.
 func FuzzSequence(f *testing.F) {
-	for _, s := range []string{smallSequence, "\ufeff" + separated(";"), separated("\t"), utf16Text(separated("\t"), binary.BigEndian), strings.ReplaceAll(separated(";"), "62.5", "1,200"), "", "a,b\n\"", "\"\n\",;"} {
+	for _, s := range []string{smallSequence, "\ufeff" + separated(";"), separated("\t"), utf16Text(separated("\t"), binary.BigEndian), strings.ReplaceAll(separated(";"), "62.5", "1,200"), "", ";", "a,b\n\"", "\"\n\",;"} {
 		f.Add([]byte(s))
 	}
 	f.Fuzz(func(t *testing.T, data []byte) {

@@ -18,6 +18,7 @@ var (
 
 // A sequenceHeader tells which column holds what.
 type sequenceHeader struct {
+	line    int
 	columns map[string]int // index by name
 	places  map[string]int // column in the header line, by name; nominal amounts as "nominal analyte"
 	nominal []nominalColumn
@@ -39,7 +40,7 @@ func (t *sequenceReader) readHeader(header record) {
 		names = names[:len(names)-1]
 	}
 	h := t.header
-	h.names = names
+	h.names, h.line = names, header.line
 	known := slices.Concat(requiredColumns, optionalColumns)
 	for i, name := range names {
 		key := strings.ToLower(name)

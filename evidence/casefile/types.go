@@ -1,4 +1,3 @@
-// Package casefile reads and validates the folder that a laboratory writes: case.yaml, method.yaml, sequence.csv.
 package casefile
 
 import (
