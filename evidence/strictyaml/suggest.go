@@ -6,7 +6,7 @@ import (
 )
 
 // Suggest asks whether one of the options was meant that differs from the name in a letter or two, in capitals or in hyphens; it
-// is empty where none is near.
+// is empty where none is near. Options with other digits are never near: raw/009.mzML is no misspelling of raw/010.mzML.
 func Suggest(name string, options []string) string {
 	best, bestAway := "", 1+max(1, min(3, len(name)/3))
 	for _, o := range options {
@@ -14,7 +14,7 @@ func Suggest(name string, options []string) string {
 		if loose(name) == loose(o) {
 			d = 0
 		}
-		if d < bestAway && o != name {
+		if d < bestAway && o != name && digits(o) == digits(name) {
 			best, bestAway = o, d
 		}
 	}
@@ -22,6 +22,15 @@ func Suggest(name string, options []string) string {
 		return ""
 	}
 	return fmt.Sprintf("did you mean %q?", best)
+}
+
+func digits(s string) string {
+	return strings.Map(func(r rune) rune {
+		if r < '0' || r > '9' {
+			return -1
+		}
+		return r
+	}, s)
 }
 
 func loose(s string) string {

@@ -6,11 +6,11 @@ import (
 )
 
 func TestSuggest(t *testing.T) {
-	options := []string{"calibrator", "control", "carryover-blank", "negative-control", "zero", "at", "by"}
+	options := []string{"calibrator", "control", "carryover-blank", "negative-control", "zero", "at", "by", "P-3", "raw/010.mzML"}
 	tests := []struct{ name, want string }{
 		{"calibratr", "calibrator"}, {"Calibrator", "calibrator"}, {"callibrator", "calibrator"}, {"contorl", "control"},
 		{"carryover_blank", "carryover-blank"}, {"CarryoverBlank", "carryover-blank"}, {"negative control", "negative-control"}, {"zeor", "zero"},
-		{"ta", "at"}, {"sample", ""}, {"x", ""}, {"", ""}, {"to", ""}, {strings.Repeat("a", 1<<20), ""},
+		{"ta", "at"}, {"P-33", ""}, {"P-4", ""}, {"p3", "P-3"}, {"raw/009.mzML", ""}, {"raw/010.mzml", "raw/010.mzML"}, {"sample", ""}, {"x", ""}, {"", ""}, {"to", ""}, {strings.Repeat("a", 1<<20), ""},
 	}
 	for _, tt := range tests {
 		want := tt.want
