@@ -14,11 +14,17 @@ type Solution struct {
 	DoF  int         // observations − columns
 }
 
-// ErrRank is the error for columns that depend on each other.
+// ErrRank is the error for columns that depend on each other, to about 14 digits.
 var ErrRank = errors.New("the columns of the design depend on each other")
 
+// ErrRange is the error for finite numbers whose squares or sums are not.
+var ErrRange = errors.New("the numbers are too large or too far apart for a fit in double precision")
+
 // WeightedLeastSquares minimises Σ w[i]·(y[i] − Σ rows[i][j]·c[j])² by Householder's QR of the rows times √w, columns scaled to
-// length 1, with one step of iterative refinement. w nil means weights of 1; weights must be above zero and finite.
+// length 1, with one step of iterative refinement. w nil means weights of 1; weights must be above zero and finite. The weights
+// are used as they stand: a factor common to all of them changes Cov and RSS, not the coefficients nor RSS·Cov.
+//
+// The error is ErrRank, ErrRange, or one that says which observation cannot be used, counting from 1. What is returned is finite.
 //
 // Source: G. H. Golub and C. F. Van Loan, Matrix Computations, 4th ed. (2013), sections 5.2 and 5.3 (from memory).
 func WeightedLeastSquares(rows [][]float64, y, w []float64) (*Solution, error) {
@@ -35,16 +41,16 @@ func WeightedLeastSquares(rows [][]float64, y, w []float64) (*Solution, error) {
 		q.root[i] = 1
 		if w != nil {
 			if !(w[i] > 0) || math.IsInf(w[i], 0) {
-				return nil, fmt.Errorf("weight %d is %g, want one above zero", i, w[i])
+				return nil, fmt.Errorf("observation %d has a weight of %g, want a finite one above zero", i+1, w[i])
 			}
 			q.root[i] = math.Sqrt(w[i])
 		}
 		if len(row) != m {
-			return nil, fmt.Errorf("observation %d has %d values, want %d", i, len(row), m)
+			return nil, fmt.Errorf("observation %d has %d values, want %d", i+1, len(row), m)
 		}
 		for j, v := range row {
 			if math.IsNaN(v) || math.IsInf(v, 0) || math.IsNaN(y[i]) || math.IsInf(y[i], 0) {
-				return nil, fmt.Errorf("observation %d is not finite", i)
+				return nil, fmt.Errorf("observation %d has values %g and response %g, want finite numbers", i+1, row, y[i])
 			}
 			q.a[j*n+i] = float64(v * q.root[i])
 		}
@@ -61,7 +67,23 @@ func WeightedLeastSquares(rows [][]float64, y, w []float64) (*Solution, error) {
 	r = residuals(rows, y, s.Coef, q.root)
 	s.RSS = Dot(r, r)
 	s.Cov = q.covariance()
+	if !s.finite() {
+		return nil, ErrRange
+	}
 	return s, nil
+}
+
+func (s *Solution) finite() bool {
+	all := append([]float64{s.RSS}, s.Coef...)
+	for _, row := range s.Cov {
+		all = append(all, row...)
+	}
+	for _, v := range all {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return false
+		}
+	}
+	return true
 }
 
 // residuals are √w·(y − Xc), each as if computed in twice the precision.
@@ -94,13 +116,22 @@ func (q *qr) factor() error {
 	q.diag = make([]float64, q.m)
 	for j := range q.m {
 		c := q.column(j)
-		q.scale[j] = math.Sqrt(Dot(c, c))
-		if q.scale[j] == 0 {
+		// By a power of two first, which is exact, so that the squares neither overflow nor underflow.
+		power := exponent(c)
+		for i := range c {
+			c[i] = math.Ldexp(c[i], -power)
+		}
+		length := math.Sqrt(Dot(c, c))
+		switch {
+		case length == 0:
 			return ErrRank
+		case math.IsNaN(length) || math.IsInf(length, 0):
+			return ErrRange
 		}
 		for i := range c {
-			c[i] /= q.scale[j]
+			c[i] /= length
 		}
+		q.scale[j] = math.Ldexp(length, power)
 	}
 	for k := range q.m {
 		v := q.column(k)[k:]
@@ -118,6 +149,16 @@ func (q *qr) factor() error {
 		}
 	}
 	return nil
+}
+
+// exponent is the binary one of the largest magnitude.
+func exponent(c []float64) int {
+	largest := 0.0
+	for _, v := range c {
+		largest = max(largest, math.Abs(v))
+	}
+	_, e := math.Frexp(largest)
+	return e
 }
 
 // reflect applies I − 2vvᵀ/(vᵀv) to c.

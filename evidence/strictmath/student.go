@@ -11,145 +11,117 @@ func TCDF(t, nu float64) float64 {
 }
 
 // TSF is the probability that Student's t with nu > 0 degrees of freedom exceeds t, without the cancellation of 1 − TCDF.
-// nu may be infinite: the normal distribution. The relative error is below 1e-13 for nu up to 10^6.
+// nu may be infinite: the normal distribution. It is NaN for another nu. The relative error is below 2e-15.
 //
-// It is half the regularised incomplete beta function I_x(ν/2, 1/2) at x = ν/(ν+t²) (Abramowitz and Stegun 26.7.1), by its
-// continued fraction (26.5.8).
+// Source: half the regularised incomplete beta function I_x(ν/2, 1/2) at x = ν/(ν+t²) (Abramowitz and Stegun 26.7.1), by its
+// continued fraction (26.5.8), from the nearer side. For many degrees of freedom see tailSeries.
 func TSF(t, nu float64) float64 {
 	switch {
 	case math.IsNaN(t) || !(nu > 0):
 		return math.NaN()
-	case math.IsInf(nu, 1):
+	case nu >= normalFrom:
 		return NormSF(t)
 	case t < 0:
 		return 1 - TSF(-t, nu)
 	case math.IsInf(t, 1):
 		return 0
+	case nu < flatBelow:
+		return 0.5
 	}
-	a := nu / 2
-	t2 := float64(t * t)
-	x, y := nu/(nu+t2), t2/(nu+t2)
-	if math.IsInf(t2, 0) {
-		x, y = 0, 1
-	}
-	// x^a·y^(1/2)/B(a, 1/2); log x = -log(1 + t²/ν) keeps its digits for large ν.
-	const sqrtPi = 1.77245385090551602730
-	front := float64(Exp(-float64(a*log1p(t2/nu))) * math.Sqrt(y) * gammaRatio(a) / sqrtPi)
-	if x < (a+1)/(a+2.5) {
-		return float64(0.5 * front / a * betaFraction(a, 0.5, x))
-	}
-	return 0.5 - float64(0.5*front/0.5*betaFraction(0.5, a, y))
-}
-
-// betaFraction is the continued fraction of the incomplete beta function by Lentz's method; it converges for
-// x < (a+1)/(a+b+2).
-func betaFraction(a, b, x float64) float64 {
-	const tiny = 1e-300
-	c, d := 1.0, 1-float64((a+b)*x)/(a+1)
-	d = 1 / awayFrom0(d, tiny)
-	h := d
-	for m := 1.0; m < 10000; m++ {
-		e := float64(m*(b-m)*x) / ((a + float64(2*m) - 1) * (a + float64(2*m)))
-		d = 1 / awayFrom0(1+float64(e*d), tiny)
-		c = awayFrom0(1+e/c, tiny)
-		h = float64(h * d * c)
-		e = -float64((a+m)*(a+b+m)*x) / ((a + float64(2*m)) * (a + float64(2*m) + 1))
-		d = 1 / awayFrom0(1+float64(e*d), tiny)
-		c = awayFrom0(1+e/c, tiny)
-		step := float64(d * c)
-		h = float64(h * step)
-		if math.Abs(step-1) < 2e-16 {
-			break
-		}
-	}
-	return h
-}
-
-func awayFrom0(v, tiny float64) float64 {
-	if math.Abs(v) < tiny {
-		return tiny
-	}
-	return v
-}
-
-// gammaRatio is Γ(x+1/2)/Γ(x) for x > 0: by Γ(x+1) = x·Γ(x) up to where the asymptotic series holds to all digits.
-//
-// Source of the series: exp of the difference of two Stirling series (Abramowitz and Stegun 6.1.41).
-func gammaRatio(x float64) float64 {
-	scale := 1.0
-	for x < 16 {
-		scale = float64(scale * x / (x + 0.5))
-		x++
-	}
-	r := 1 / x
-	r2 := float64(r * r)
-	s := horner(r2, -1.0/8, 1.0/192, -1.0/640, 17.0/14336, -31.0/18432, 691.0/180224)
-	return float64(scale * math.Sqrt(x) * Exp(float64(r*s)))
-}
-
-// log1p is log(1+x) for x ≥ 0 (W. Kahan's form, from memory).
-func log1p(x float64) float64 {
-	u := 1 + x
-	if u == 1 || math.IsInf(u, 0) {
-		return x
-	}
-	return float64(Log(u) * (x / (u - 1)))
-}
-
-// TQuantile is the t with TCDF(t, nu) = p, for nu > 0 (infinite: the normal distribution). It is ±Inf at 1 and 0 and NaN
-// outside. The relative error is below 1e-12 for nu from 1 to 10^6.
-func TQuantile(p, nu float64) float64 {
+	s := studentAt(t, nu)
 	switch {
-	case math.IsNaN(p) || p < 0 || p > 1 || !(nu > 0):
-		return math.NaN()
-	case p == 0.5:
-		return 0
-	case p == 0:
-		return math.Inf(-1)
-	case p == 1:
-		return math.Inf(1)
-	case math.IsInf(nu, 1):
-		return NormQuantile(p)
-	case p < 0.5:
-		return -upperT(p, nu)
+	case nu >= seriesFrom && s.log.hi <= 1:
+		return s.tailSeries()
+	case s.y*(s.a+2.5) < 0.5: // nearer to the centre than to the tail
+		return 0.5 - s.fromCentre()
 	}
-	return upperT(1-p, nu)
+	return s.fromTail()
 }
 
-// upperT solves TSF(t, nu) = q for 0 < q < 1/2: bisection in log t to bracket, then Newton's method on log TSF, kept inside.
-func upperT(q, nu float64) float64 {
-	low, high := 0.0, 1.0
-	for TSF(high, nu) > q {
-		low, high = high, float64(2*high)
-		if math.IsInf(high, 0) {
-			return high
-		}
-	}
-	t := float64(0.5 * (low + high))
-	for range 200 {
-		s := TSF(t, nu)
-		if s > q {
-			low = t
-		} else {
-			high = t
-		}
-		next := t
-		if s > 0 {
-			next = t + float64(s*Log(s/q))/tDensity(t, nu)
-		}
-		if !(next > low && next < high) {
-			next = float64(0.5 * (low + high))
-		}
-		if math.Abs(next-t) <= 1e-16*t || next == low || next == high {
-			return next
-		}
-		t = next
-	}
-	return t
+const (
+	normalFrom = 1e25   // degrees of freedom from which Student's tail is the normal one to all digits: they differ by t⁴/(4ν)
+	flatBelow  = 1e-290 // degrees of freedom below which the probability between 0 and any finite t is nothing
+	seriesFrom = 20     // degrees of freedom from which tailSeries holds
+)
+
+// A student holds what its distribution is computed from at t ≥ 0.
+type student struct {
+	nu, a float64 // degrees of freedom, and half of them
+	x, y  float64 // ν/(ν+t²), t²/(ν+t²)
+	rootY float64
+	log   double // log(1 + t²/ν) = −log x
 }
 
-// tDensity is Student's density.
-func tDensity(t, nu float64) float64 {
+func studentAt(t, nu float64) student {
+	s := student{nu: nu, a: float64(nu / 2), y: 1, rootY: 1}
+	t2 := product2(t, t)
+	if !math.IsInf(t2.hi, 0) {
+		s.x, s.y = nu/(nu+t2.hi), t2.hi/(nu+t2.hi)
+		s.rootY = t / math.Sqrt(nu+t2.hi) // where t² underflows too
+	}
+	q := t2.div(double{nu, 0})
+	if q.hi < 1<<60 {
+		s.log = log1pDouble(q)
+		return s
+	}
+	// log(1+q) = log q + 1/q, and q may overflow.
+	l := logDouble(t)
+	s.log = double{float64(2 * l.hi), float64(2 * l.lo)}.add(logDouble(nu).scale(-1)).add(double{s.x, 0})
+	return s
+}
+
+// central tells whether the fraction from the centre is the one that converges.
+func (s student) central() bool { return s.y*(s.a+2.5) < 1.5 }
+
+// front is x^a·√y/B(a, 1/2), which is t times Student's density at t.
+func (s student) front() float64 {
 	const sqrtPi = 1.77245385090551602730
-	return float64(gammaRatio(nu/2) / (sqrtPi * math.Sqrt(nu)) * Exp(-float64(0.5*(nu+1)*log1p(float64(t*t)/nu))))
+	return float64(expDouble(s.log.scale(-s.a)) * s.rootY * gammaRatio(s.a) / sqrtPi)
+}
+
+// fromCentre is the probability between 0 and t.
+func (s student) fromCentre() float64 {
+	if s.central() {
+		return float64(s.front() * betaFraction(0.5, s.a, s.y, 1-float64((s.a+0.5)*s.y)/1.5))
+	}
+	return 0.5 - s.fromTail()
+}
+
+// fromTail is the probability above t.
+func (s student) fromTail() float64 {
+	first := (0.5 + float64((s.a+0.5)*s.y)) / (s.a + 1)
+	return float64(0.5 * s.front() / s.a * betaFraction(s.a, 0.5, s.x, first))
+}
+
+// tailSeries is the upper tail for many degrees of freedom.
+//
+// With u = log(1+t²/ν) as the variable of integration the tail is
+//
+//	Γ(a+1/2)/(2·√π·Γ(a)) · ∫ e^(−Nu)·u^(−1/2)·g(u) du from u₀ up,  N = (ν − 1/2)/2,  g(u) = √((u/2)/sinh(u/2)),
+//
+// and g has a series in u²; each power gives an incomplete gamma function, of which the first is √π·erfc(√(N·u₀)) and the others
+// follow by Γ(s+1, z) = s·Γ(s, z) + z^s·e^(−z). All have e^(−N·u₀) as a factor.
+//
+// It is the idea of A. R. DiDonato and A. H. Morris, ACM Trans. Math. Softw. 18 (1992) 360-373, section 9 (from memory), for b = 1/2.
+func (s student) tailSeries() float64 {
+	const sqrtPi = 1.77245385090551602730
+	n := float64((s.nu - 0.5) / 2)
+	u := s.log.hi
+	sum := float64(Erfcx(math.Sqrt(float64(n*u))) * sqrtPi)
+	term, step, power := sum, math.Sqrt(u/n), 1.0 // term is e^z·Γ(j+1/2, z)/N^j
+	for j := range 2 * (len(rootOfSinh) - 1) {
+		term = float64((float64(j)+0.5)/n*term) + float64(power*step)
+		power = float64(power * u)
+		if j%2 == 1 {
+			sum += float64(rootOfSinh[(j+1)/2] * term)
+		}
+	}
+	return float64(expDouble(s.log.scale(-n)) * gammaRatio(s.a) / math.Sqrt(n) * sum / (2 * sqrtPi))
+}
+
+// rootOfSinh are the coefficients of √((u/2)/sinh(u/2)) in powers of u².
+var rootOfSinh = [...]float64{
+	1, -1.0 / 48, 1.0 / 2560, -61.0 / 7741440, 1.6967665791721781305e-7, -3.8050641917219065657e-9, 8.7483775963154073041e-11,
+	-2.0445233594119738176e-12, 4.8333517979677044083e-14, -1.1524341017673859239e-15, 2.7660520435993700423e-17, -6.6742819508916599512e-19,
+	1.6174550771815798882e-20, -3.9339779200913800155e-22,
 }
