@@ -23,6 +23,9 @@ func Applicable(set *Set, c casefile.Case, m casefile.Method) casefile.Problems 
 		case a.Kind == casefile.Threshold && set.limitFor(a.ID) == nil:
 			problems = append(problems, casefile.Problem{File: casefile.CaseFile, Key: "criteria", Got: fmt.Sprintf("the set %s, which has no threshold for %s", set.ID, a.ID),
 				Want: "a set that has one; this one has thresholds for: " + limitNames(set), Hint: "the method calls the analyte one with a threshold (kind: threshold)"})
+		case a.Kind == casefile.Presence && set.limitFor(a.ID) != nil:
+			problems = append(problems, casefile.Problem{File: casefile.CaseFile, Key: "criteria", Got: fmt.Sprintf("the set %s, which compares %s with a threshold", set.ID, a.ID),
+				Want: "a method that does (kind: threshold)", Hint: "the method reports the analyte by presence alone"})
 		case a.Kind == casefile.Presence && !set.Presence.Any:
 			problems = append(problems, casefile.Problem{File: casefile.CaseFile, Key: "criteria", Got: fmt.Sprintf("the set %s, which reports nothing by presence alone", set.ID),
 				Want: "a set that does, or a method with a threshold for " + a.ID})

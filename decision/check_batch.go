@@ -6,118 +6,143 @@ import (
 
 	"assaywrit/evidence"
 	"assaywrit/evidence/casefile"
+	"assaywrit/evidence/strictmath"
 )
 
-// batchChecks are those that must hold for anything to be said about an analyte, positive or negative.
-func (j *judge) batchChecks(k int) {
-	a := &j.rec.Analytes[k]
-	b := batchJudge{j, a, k, j.rec.Method.Batch, fmt.Sprintf("/analytes/%d", k)}
-	b.reference()
-	b.blanks()
-	b.internalStandard()
-	b.negativeControl()
-	b.positiveControls()
-	if b.hasCalibration() {
-		b.calibrators()
-		b.controls()
-	}
-	b.bracket()
-}
-
+// A batchJudge applies what must hold of the batch for one analyte.
 type batchJudge struct {
 	*judge
 	a      *evidence.Analyte
 	k      int
 	limits casefile.BatchLimits
 	at     string // JSON pointer of the analyte
+
+	// The lowest and the highest amount of the calibrators that pass; nil where none does.
+	low, high *float64
+}
+
+func (j *judge) batch(k int) *batchJudge {
+	return &batchJudge{judge: j, a: &j.rec.Analytes[k], k: k, limits: j.rec.Method.Batch, at: fmt.Sprintf("/analytes/%d", k)}
+}
+
+// checks are those that must hold for anything to be said about an analyte, positive or negative.
+func (b *batchJudge) all() {
+	b.rule()
+	b.complete()
+	b.reference()
+	b.blanks()
+	b.carryover()
+	b.internalStandard()
+	b.negativeControl()
+	b.positiveControls()
+	if methodOf(b.rec, b.a.ID).Calibration != nil {
+		b.calibrators()
+		b.controls()
+	}
+	b.bracket()
 }
 
 func (b *batchJudge) start(name, title string, required bool, evidence ...string) Check {
 	return Check{ID: b.a.ID + "/" + name, Group: "batch", Title: title, Required: required, Evidence: evidence}
 }
 
-func (b *batchJudge) hasCalibration() bool {
-	return slices.ContainsFunc(b.rec.Method.Analytes, func(m casefile.Analyte) bool { return m.ID == b.a.ID && m.Calibration != nil })
+// rule: the set must say what is to be done with the analyte.
+func (b *batchJudge) rule() {
+	c := b.start("rule", "Rule of the criteria set", true, b.at+"/kind")
+	if b.a.Kind == casefile.Threshold {
+		rule := b.set.limitFor(b.a.ID)
+		c = c.custom("a threshold has a source").passIf(rule != nil)
+		if rule != nil {
+			c = c.cited(rule.ThresholdSource.or(rule.Cite))
+		}
+		b.add(c.says("The criteria set states a threshold for "+b.a.Name+".", "The criteria set states no threshold for "+b.a.Name+"."))
+		return
+	}
+	if rule := b.set.limitFor(b.a.ID); rule != nil {
+		c = c.cited(rule.ThresholdSource.or(rule.Cite)).passIf(false)
+		c.Sentence = "The criteria set compares " + b.a.Name + " with a threshold; its presence alone is not reported."
+		b.add(c)
+		return
+	}
+	c = c.cited(b.set.Presence.Cite).passIf(b.set.Presence.Any)
+	b.add(c.says(b.a.Name+" is reported by presence.", "The criteria set reports nothing by presence alone."))
 }
 
 func (b *batchJudge) reference() {
+	rule := b.set.Identification.Reference
 	n := float64(len(b.a.Reference.Injections))
-	c := b.start("reference", "Reference in the same batch", true, b.at+"/reference/injections").byMethod(b.rec, "identification")
-	j := c.atLeast(&n, 1, count, "The number of reference injections of "+b.a.Name+" in this batch")
-	b.add(j)
-}
-
-// blanks: analyte and internal standard in everything that should hold none, and carry-over.
-func (b *batchJudge) blanks() {
-	carryover, matrix := 0, 0
-	for i, x := range b.a.Blanks {
-		at := fmt.Sprintf("%s/blanks/%d", b.at, i)
-		name, title := "blank", "Analyte in a blank"
-		switch x.Role {
-		case casefile.CarryoverBlank:
-			name, title = "carry-over", "Carry-over"
-			carryover++
-		case casefile.SolventBlank:
-		default:
-			matrix++
-		}
-		v := x.OfLowest
-		if x.Area == 0 {
-			v = new(float64) // nothing was found: below any share
-		}
-		b.add(b.start(name+"/"+x.Injection, title, true, at+"/area_counts_min").byMethod(b.rec, "blanks").
-			atMost(v, b.limits.BlankMaxOfLowest, percent, fmt.Sprintf("%s in the %s %s, of the lowest calibrator,", b.a.Name, x.Role, x.Injection)))
-		if x.ExpectInternalStandard {
-			continue
-		}
-		v = x.OfInternalStandard
-		if x.InternalStandardArea == 0 {
-			v = new(float64)
-		}
-		b.add(b.start("blank-internal-standard/"+x.Injection, "Internal standard in a blank", true, at+"/internal_standard_area_counts_min").byMethod(b.rec, "blanks").
-			atMost(v, b.limits.BlankMaxOfInternalStandard, percent, fmt.Sprintf("Internal standard in the %s %s, of the calibrators' mean,", x.Role, x.Injection)))
-	}
-	one := func(name, title, what string, n int) {
-		v := float64(n)
-		b.add(b.start(name, title, true, b.at+"/blanks").custom("a batch holds blanks and shows its carry-over").atLeast(&v, 1, count, what))
-	}
-	one("blanks-present", "Matrix blanks in the batch", "The number of injections of matrix without analyte", matrix)
-	one("carry-over-present", "Carry-over measured", "The number of blanks that show carry-over", carryover)
+	c := b.start("reference", "Reference in the same batch", rule.Required, b.at+"/reference/injections").cited(rule.Cite)
+	b.add(c.atLeast(&n, 1, count, "The number of reference injections of "+b.a.Name+" in this batch"))
 }
 
 // internalStandard: the response in everything that was spiked with it, of the calibrators' mean.
 func (b *batchJudge) internalStandard() {
-	w := window{b.limits.InternalStandardLow, b.limits.InternalStandardHigh}
+	w := window{low: b.limits.InternalStandardLow, high: b.limits.InternalStandardHigh}
+	mean, of := b.meanInternalStandard()
 	for i, r := range b.a.InternalStandard {
 		switch r.Role {
 		case casefile.SolventBlank, casefile.MatrixBlank, casefile.CarryoverBlank:
 			continue
 		}
+		share := r.Relative
+		if share == nil && r.Area != nil && mean != nil {
+			share = ptrTo(*r.Area / *mean)
+		}
 		required := r.Role == casefile.SampleAliquot || r.Role == casefile.Control || r.Role == casefile.NegativeControl
-		b.add(b.start("internal-standard/"+r.Injection, "Response of the internal standard", required, fmt.Sprintf("%s/internal_standard_responses/%d", b.at, i)).
-			byMethod(b.rec, "internal standard").within(r.Relative, w, percent, fmt.Sprintf("Internal standard in the %s %s, of the calibrators' mean,", r.Role, r.Injection)))
+		at := fmt.Sprintf("%s/internal_standard_responses/%d", b.at, i)
+		b.add(b.start("internal-standard/"+r.Injection, "Response of the internal standard", required, field(at, "area_counts_min", r.Area != nil)).
+			byMethod(b.rec, "internal standard").within(share, w, percent, fmt.Sprintf("Internal standard in the %s %s, of the %s' mean,", r.Role, r.Injection, of)))
 	}
 }
 
-// negativeControl must not show the analyte identified.
+// meanInternalStandard is the mean area over the reference injections of a batch that has no calibrators, which would serve otherwise;
+// nil where it has some.
+func (b *batchJudge) meanInternalStandard() (mean *float64, of string) {
+	if slices.ContainsFunc(b.rec.Injections, func(inj evidence.Injection) bool { return inj.Role == casefile.Calibrator }) {
+		return nil, "calibrators"
+	}
+	var areas []float64
+	for _, r := range b.a.InternalStandard {
+		if r.Area != nil && slices.Contains(b.a.Reference.Injections, r.Injection) {
+			areas = append(areas, *r.Area)
+		}
+	}
+	if len(areas) == 0 || !(strictmath.Mean(areas) > 0) {
+		return nil, "controls"
+	}
+	return ptrTo(strictmath.Mean(areas)), "controls"
+}
+
+// negativeControl must not show the analyte identified, and must have been able to show it.
 func (b *batchJudge) negativeControl() {
 	n := 0.0
 	for i := range b.a.Identifications {
 		id := &b.a.Identifications[i]
-		if b.roleOf(id) != casefile.NegativeControl {
+		if b.rec.Injections[id.InjectionIndex].Role != casefile.NegativeControl {
 			continue
 		}
 		n++
 		c := b.start("negative-control/"+id.Injection, "Negative control", true, fmt.Sprintf("%s/identifications/%d", b.at, i)).
-			custom("a negative control must not show the analyte").passIf(!holds(b.identityChecks(b.k, i)))
-		c.Sentence = fmt.Sprintf("The negative control %s does not show %s identified.", id.Injection, b.a.Name)
-		if c.Result == Failed {
-			c.Sentence = fmt.Sprintf("The negative control %s shows %s identified.", id.Injection, b.a.Name)
-		}
-		b.add(c)
+			custom("a negative control must not show the analyte")
+		b.add(b.without(c, i, "negative control "+id.Injection))
 	}
 	b.add(b.start("negative-control-present", "Negative control in the batch", true, b.at+"/identifications").custom("a batch holds a negative control").
 		atLeast(&n, 1, count, "The number of negative controls"))
+}
+
+// without passes a check where an injection is shown not to hold the analyte by the criteria for identity.
+func (b *batchJudge) without(c Check, i int, what string) Check {
+	switch verdictOf(b.identityChecks(b.k, i)) {
+	case refuted:
+		c = c.passIf(true)
+		c.Sentence = fmt.Sprintf("The %s does not show %s identified.", what, b.a.Name)
+	case shown:
+		c = c.passIf(false)
+		c.Sentence = fmt.Sprintf("The %s shows %s identified.", what, b.a.Name)
+	default:
+		c = c.missing(fmt.Sprintf("It cannot be told whether the %s shows %s identified.", what, b.a.Name))
+	}
+	return c
 }
 
 // positiveControls must show the analyte identified: otherwise its absence in the sample would say nothing.
@@ -125,16 +150,18 @@ func (b *batchJudge) positiveControls() {
 	n := 0.0
 	for i := range b.a.Identifications {
 		id := &b.a.Identifications[i]
-		if b.roleOf(id) != casefile.Control || !b.spiked(id.InjectionIndex) {
+		if b.rec.Injections[id.InjectionIndex].Role != casefile.Control || !b.spiked(id.InjectionIndex) {
 			continue
 		}
 		n++
-		bad, _ := failedIDs(b.identityChecks(b.k, i))
+		checks := b.identityChecks(b.k, i)
+		bad, _ := failedIDs(checks)
 		c := b.start("positive-control/"+id.Injection, "Positive control", true, fmt.Sprintf("%s/identifications/%d", b.at, i)).
 			custom("a positive control must show the analyte by the same criteria").passIf(len(bad) == 0)
+		c.Missing = verdictOf(checks) == unknown
 		c.Sentence = fmt.Sprintf("The control %s shows %s identified by the same criteria.", id.Injection, b.a.Name)
 		if c.Result == Failed {
-			c.Sentence = fmt.Sprintf("The control %s does not show %s identified: %s.", id.Injection, b.a.Name, bad[0])
+			c.Sentence = fmt.Sprintf("The control %s does not show %s identified; criteria not met: %s.", id.Injection, b.a.Name, titles(checks, ""))
 		}
 		b.add(c)
 	}
@@ -144,12 +171,8 @@ func (b *batchJudge) positiveControls() {
 
 // spiked tells whether an injection was made with some of the analyte.
 func (b *batchJudge) spiked(injection int) bool {
-	for _, n := range b.rec.Sequence[injection].Nominal {
-		if n.Analyte == b.a.ID {
-			return n.NGPerML > 0
-		}
-	}
-	return false
+	n := nominal(b.rec, injection, b.a.ID)
+	return n != nil && *n > 0
 }
 
 // bracket: a control before the first and after the last aliquot of the sample.
@@ -171,9 +194,5 @@ func (b *batchJudge) bracket() {
 		}
 	}
 	c := b.start("bracket", "Controls around the sample", true, "/injections").custom("controls stand before and after the sample").passIf(first >= 0 && before && after)
-	c.Sentence = "Controls were acquired before and after the sample's aliquots."
-	if c.Result == Failed {
-		c.Sentence = "The sample's aliquots do not lie between controls."
-	}
-	b.add(c)
+	b.add(c.says("Controls were acquired before and after the sample's aliquots.", "The sample's aliquots do not lie between controls."))
 }

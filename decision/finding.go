@@ -46,10 +46,11 @@ type AnalyteFinding struct {
 	Outcome  Outcome  `json:"outcome"`
 	Label    string   `json:"label"`              // what a reader sees, from the criteria set
 	Sentence string   `json:"sentence"`           // the outcome in one plain sentence
-	Failed   []string `json:"failed,omitempty"`   // ids of required checks that failed
-	Advisory []string `json:"advisory,omitempty"` // ids of advisory checks that failed
+	Meaning  string   `json:"meaning,omitempty"`  // what such an outcome means, from the criteria set; the same for every sample
+	Failed   []string `json:"failed,omitempty"`   // ids of required checks that failed, those of the case among them
+	Advisory []string `json:"advisory,omitempty"` // ids of the analyte's advisory checks that failed
 	Checks   []Check  `json:"checks"`
-	Limit    *Limit   `json:"limit,omitempty"` // only for a threshold substance with a result
+	Limit    *Limit   `json:"limit,omitempty"` // only where a value was compared with a threshold: every required check holds
 }
 
 // Result of a check.
@@ -64,7 +65,7 @@ const (
 // A Check is one criterion applied to one set of values.
 type Check struct {
 	ID       string   `json:"id"`    // unique in the finding, such as "salbutamol/ratio/qualifier-1/A2"
-	Group    string   `json:"group"` // "identification", "batch", "calibration", "quantity", "limit", "custody"
+	Group    string   `json:"group"` // "case", "batch", "identification", "quantity", "limit"
 	Title    string   `json:"title"`
 	Clause   string   `json:"clause"`   // of the criteria set or the method
 	Source   string   `json:"source"`   // "read", "from memory", "method", "common practice, no source"
@@ -74,6 +75,7 @@ type Check struct {
 	High     *Figure  `json:"high,omitempty"`
 	Distance *float64 `json:"distance,omitempty"` // to the nearest limit as a share of the tolerance: 1 at the centre, 0 at the limit, negative outside
 	Result   Result   `json:"result"`
+	Missing  bool     `json:"missing,omitempty"` // failed since something that it needs is not in the record, not by what was measured
 	Required bool     `json:"required"`
 	Sentence string   `json:"sentence"`
 }
@@ -85,7 +87,8 @@ type Figure struct {
 	Text  string  `json:"text"`
 }
 
-// A Limit is the comparison of a result with the threshold, all in ng/mL.
+// A Limit is the comparison of a result with the threshold, all in ng/mL. DecisionLimit is Threshold + GuardBand, times
+// Adjustment where there is one.
 type Limit struct {
 	Value             float64  `json:"value_ng_per_ml"` // as measured
 	StdU              float64  `json:"combined_std_u_ng_per_ml"`
@@ -94,9 +97,11 @@ type Limit struct {
 	ExpU              float64  `json:"expanded_u_ng_per_ml"`
 	MaxStdU           *float64 `json:"max_std_u_ng_per_ml,omitempty"` // the largest allowed at the threshold
 	Threshold         float64  `json:"threshold_ng_per_ml"`
+	ThresholdSource   string   `json:"threshold_source"` // clause, and whether it was read or comes from memory
 	GuardBand         float64  `json:"guard_band_ng_per_ml"`
 	GuardRule         string   `json:"guard_band_rule"`
 	DecisionLimit     float64  `json:"decision_limit_ng_per_ml"` // the one applied
+	LimitSource       string   `json:"decision_limit_source"`    // of the decision limit, or of the rule that gives it
 	StatedLimit       *float64 `json:"stated_decision_limit_ng_per_ml,omitempty"`
 	Adjustment        *float64 `json:"limit_adjustment_factor,omitempty"` // for specific gravity
 	AdjustmentRule    string   `json:"limit_adjustment_rule,omitempty"`

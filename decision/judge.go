@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"assaywrit/evidence"
+	"assaywrit/evidence/casefile"
 )
 
 // A judge applies one criteria set to one record, and gathers the checks.
@@ -29,10 +30,7 @@ func (j *judge) add(c Check) Check {
 
 // cited fills where a rule comes from; a value from memory says so wherever it is applied.
 func (c Check) cited(from Cite) Check {
-	c.Clause, c.Source = from.Clause, from.Tag
-	if from.Tag == "from memory" {
-		c.Source = "from memory; check against the edition in force"
-	}
+	c.Clause, c.Source = from.Clause, from.source()
 	return c
 }
 
@@ -57,30 +55,36 @@ func (c Check) passIf(ok bool) Check {
 	return c
 }
 
-// figure is a number with its text for people.
-func figure(v float64, unit string, digits int) *Figure {
-	text := Text(v, digits)
-	if unit != "" {
-		text += " " + unit
+// says sets the sentence: one for a check that passed, one for a check that failed.
+func (c Check) says(passed, failed string) Check {
+	c.Sentence = passed
+	if c.Result == Failed {
+		c.Sentence = failed
 	}
-	return &Figure{Value: v, Unit: unit, Text: text}
+	return c
 }
 
-// percent is a fraction shown in per cent.
-func percent(v float64) *Figure {
-	return &Figure{Value: v, Unit: "1", Text: Text(float64(v*100), 3) + " %"}
+// missing makes a check fail for want of information.
+func (c Check) missing(sentence string) Check {
+	c.Result, c.Missing, c.Sentence = Failed, true, sentence
+	return c
+}
+
+// notApplicable says why a check is not applied.
+func (c Check) notApplicable(sentence string) Check {
+	c.Result, c.Sentence = NotApplicable, sentence
+	return c
 }
 
 // within measures a value against a window and says so.
-func (c Check) within(v *float64, w window, show func(float64) *Figure, what string) Check {
-	c.Low, c.High = show(w.low), show(w.high)
+func (c Check) within(v *float64, w window, show shower, what string) Check {
 	if v == nil {
-		c.Result = Failed
-		c.Sentence = fmt.Sprintf("%s could not be measured; accepted is %s to %s.", what, c.Low.Text, c.High.Text)
-		return c
+		c.Low, c.High = show(w.shownLow(), 0), show(w.high, 0)
+		return c.missing(fmt.Sprintf("%s could not be measured; accepted is %s to %s.", what, c.Low.Text, c.High.Text))
 	}
+	value, ends := apart(show, *v, w.shownLow(), w.high)
 	d := w.distance(*v)
-	c.Measured, c.Distance = show(*v), &d
+	c.Measured, c.Low, c.High, c.Distance = value, ends[0], ends[1], &d
 	c = c.passIf(w.holds(*v))
 	verb := "lies within"
 	if c.Result == Failed {
@@ -91,14 +95,13 @@ func (c Check) within(v *float64, w window, show func(float64) *Figure, what str
 }
 
 // atMost measures a value against an upper limit.
-func (c Check) atMost(v *float64, limit float64, show func(float64) *Figure, what string) Check {
-	c.High = show(limit)
+func (c Check) atMost(v *float64, limit float64, show shower, what string) Check {
 	if v == nil {
-		c.Result = Failed
-		c.Sentence = fmt.Sprintf("%s could not be measured; accepted is at most %s.", what, c.High.Text)
-		return c
+		c.High = show(limit, 0)
+		return c.missing(fmt.Sprintf("%s could not be measured; accepted is at most %s.", what, c.High.Text))
 	}
-	c.Measured = show(*v)
+	value, ends := apart(show, *v, limit)
+	c.Measured, c.High = value, ends[0]
 	if limit > 0 {
 		d := 1 - *v/limit
 		c.Distance = &d
@@ -109,14 +112,13 @@ func (c Check) atMost(v *float64, limit float64, show func(float64) *Figure, wha
 }
 
 // atLeast measures a value against a lower limit.
-func (c Check) atLeast(v *float64, limit float64, show func(float64) *Figure, what string) Check {
-	c.Low = show(limit)
+func (c Check) atLeast(v *float64, limit float64, show shower, what string) Check {
 	if v == nil {
-		c.Result = Failed
-		c.Sentence = fmt.Sprintf("%s could not be measured; accepted is at least %s.", what, c.Low.Text)
-		return c
+		c.Low = show(limit, 0)
+		return c.missing(fmt.Sprintf("%s could not be measured; accepted is at least %s.", what, c.Low.Text))
 	}
-	c.Measured = show(*v)
+	value, ends := apart(show, *v, limit)
+	c.Measured, c.Low = value, ends[0]
 	if limit > 0 {
 		d := *v/limit - 1
 		c.Distance = &d
@@ -126,11 +128,15 @@ func (c Check) atLeast(v *float64, limit float64, show func(float64) *Figure, wh
 	return c
 }
 
-func count(v float64) *Figure   { return figure(v, "", 12) }
-func ratio(v float64) *Figure   { return figure(v, "", 3) }
-func minutes(v float64) *Figure { return &Figure{Value: v, Unit: "min", Text: fixed(v, 3) + " min"} }
+// field is the pointer to a field of the record, or to what holds it where the field is absent.
+func field(holder, name string, present bool) string {
+	if present {
+		return holder + "/" + name
+	}
+	return holder
+}
 
-// failed lists the ids of checks that failed, the required ones and the advisory ones.
+// failedIDs lists the ids of checks that failed, the required ones and the advisory ones.
 func failedIDs(checks []Check) (required, advisory []string) {
 	for _, c := range checks {
 		switch {
@@ -148,4 +154,14 @@ func failedIDs(checks []Check) (required, advisory []string) {
 func holds(checks []Check) bool {
 	required, _ := failedIDs(checks)
 	return len(required) == 0
+}
+
+// methodOf returns what the method says of an analyte; consistent has made sure that it says something.
+func methodOf(rec *evidence.Record, analyte string) *casefile.Analyte {
+	for i := range rec.Method.Analytes {
+		if rec.Method.Analytes[i].ID == analyte {
+			return &rec.Method.Analytes[i]
+		}
+	}
+	panic("decision: internal error: no analyte " + analyte + " in the method")
 }

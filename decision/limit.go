@@ -7,133 +7,133 @@ import (
 	"assaywrit/evidence/uncertainty"
 )
 
-// compare weighs a result against its threshold and gives the outcome. Where something that the rule needs is missing, a
-// required check fails, and the caller makes the outcome not determined.
-func (j *judge) compare(k int, rule *LimitRule, unit string) (*Limit, Outcome) {
-	a := &j.rec.Analytes[k]
-	r := a.Result
-	at := fmt.Sprintf("/analytes/%d", k)
+// limit weighs the result against its threshold. The caller has made sure that there is one and that every required check holds.
+func (b *batchJudge) limit(rule *LimitRule, factor *float64) (*Limit, Outcome, error) {
+	r := b.a.Result
 	limit := &Limit{
-		Value: r.NGPerML, StdU: r.Budget.StdU, K: j.set.Quantity.CoverageFactor.Value, Threshold: rule.Threshold, MaxStdU: rule.MaxStdU,
-		StatedLimit: rule.DecisionLimit, Strict: rule.Compare == "greater", DisplayUnit: unit,
-		KRule: "k as the criteria set states it: " + j.set.Quantity.CoverageFactor.Clause, RoundingRule: roundingText(rule),
+		Value: r.NGPerML, StdU: r.Budget.StdU, K: b.set.Quantity.CoverageFactor.Value, Threshold: rule.Threshold, MaxStdU: rule.MaxStdU,
+		StatedLimit: rule.DecisionLimit, Strict: rule.Compare == "greater", DisplayUnit: methodOf(b.rec, b.a.ID).Unit,
+		KRule: "k as the criteria set states it: " + b.set.Quantity.CoverageFactor.Clause, RoundingRule: roundingText(rule),
+		ThresholdSource: rule.ThresholdSource.or(rule.Cite).text(), LimitSource: rule.DecisionLimitSource.or(rule.Cite).text(),
 	}
 	limit.ExpU = float64(limit.K * limit.StdU)
-	j.decisionLimit(limit, rule)
-	if rule.Gravity {
-		j.adjustForGravity(a, limit, at)
+	guard(limit, rule)
+	if factor != nil {
+		limit.Adjustment, limit.AdjustmentRule = factor, gravityText(b.set.Quantity.Gravity)
+		limit.DecisionLimit, _ = mul(limit.DecisionLimit, *factor)
 	}
-	limit.GuardBand, _ = sub(limit.DecisionLimit, limit.Threshold)
 	limit.Compared = roundValue(limit.Value, rule.Rounding, rule.Digits)
-	p, err := uncertainty.ProbabilityAbove(limit.Value, limit.StdU, limit.Threshold, nil)
-	if err == nil {
-		limit.ProbabilityAbove = p
-		limit.ProbabilityMethod = "normal distribution about the value with the combined standard uncertainty; nothing assumed beforehand"
+	if err := probability(limit, r); err != nil {
+		return nil, NotDetermined, err
 	}
 	outcome := outcomeOf(limit, rule)
-	j.limitCheck(a, limit, outcome, rule, at)
-	return limit, outcome
+	b.limitCheck(limit, outcome, rule)
+	return limit, outcome, nil
 }
 
-// decisionLimit fills the limit that is applied. A stated one is applied as it stands; what threshold and k·u_max would give is
-// only compared with it.
-func (j *judge) decisionLimit(limit *Limit, rule *LimitRule) {
+// guard fills the guard band and the limit that follows. A stated limit is applied as it stands.
+func guard(limit *Limit, rule *LimitRule) {
 	switch rule.Guard {
 	case "stated":
 		limit.DecisionLimit, limit.GuardRule = *rule.DecisionLimit, "decision limit as the edition states it"
 	case "k-times-u":
-		band := float64(*rule.GuardK * limit.StdU)
+		band, _ := mul(*rule.GuardK, limit.StdU)
 		limit.DecisionLimit, _ = add(rule.Threshold, band)
 		limit.GuardRule = fmt.Sprintf("threshold + %g × combined standard uncertainty of the result", *rule.GuardK)
-	default:
+	case "k-times-max-u":
+		band, _ := mul(*rule.GuardK, *rule.MaxStdU)
+		limit.DecisionLimit, _ = add(rule.Threshold, band)
+		limit.GuardRule = fmt.Sprintf("threshold + %g × largest combined standard uncertainty allowed", *rule.GuardK)
+	case "none":
 		limit.DecisionLimit, limit.GuardRule = rule.Threshold, "no guard band: the threshold itself decides"
+	default:
+		panic("decision: internal error: guard band " + rule.Guard)
 	}
+	limit.GuardBand, _ = sub(limit.DecisionLimit, limit.Threshold)
 }
 
-// adjustForGravity raises the limit for concentrated urine. Without a recorded specific gravity it cannot be known whether the
-// limit stands as it is.
-func (j *judge) adjustForGravity(a *evidence.Analyte, limit *Limit, at string) {
-	g := j.set.Quantity.Gravity
-	sg := j.rec.Case.Sample.SpecificGravity
-	c := Check{ID: a.ID + "/specific-gravity", Group: "limit", Title: "Specific gravity", Required: true, Evidence: []string{"/case/sample/specific_gravity"}}
-	c = c.cited(g.Cite).passIf(sg != nil)
-	limit.AdjustmentRule = fmt.Sprintf("above a specific gravity of %g the limit is multiplied by (SG + %g − 1)/(%g − 1)", g.ApplyAbove, g.Add, g.Reference)
-	if sg == nil {
-		c.Evidence = []string{"/case/sample"}
-		c.Sentence = "The specific gravity of the sample is not recorded, so that the limit that applies is not known."
-		j.add(c)
-		return
+// probability is that of a true value above the threshold, by the value and its uncertainty alone. Few degrees of freedom make it
+// less sure.
+func probability(limit *Limit, r *evidence.Result) error {
+	p, err := uncertainty.ProbabilityAbove(limit.Value, limit.StdU, limit.Threshold, r.Budget.EffectiveDoF)
+	if err != nil {
+		return fmt.Errorf("decision: probability above the threshold: %w", err)
 	}
-	factor := gravityFactor(*sg, g)
-	limit.Adjustment = &factor
-	c.Measured = &Figure{Value: *sg, Text: fixed(*sg, 3)}
-	c.Sentence = fmt.Sprintf("The specific gravity is %s; the limit is not adjusted (it is above %g).", c.Measured.Text, g.ApplyAbove)
-	if factor > 1 {
-		limit.DecisionLimit = float64(limit.DecisionLimit * factor)
-		c.Sentence = fmt.Sprintf("The specific gravity is %s; the decision limit is raised by the factor %s.", c.Measured.Text, Text(factor, 4))
+	limit.ProbabilityAbove = p
+	limit.ProbabilityMethod = "normal distribution about the value with the combined standard uncertainty; nothing assumed beforehand"
+	if nu := r.Budget.EffectiveDoF; nu != nil {
+		limit.ProbabilityMethod = fmt.Sprintf("Student's distribution about the value with the combined standard uncertainty and %s effective degrees of freedom; nothing assumed beforehand", Text(*nu, 3))
 	}
-	j.add(c)
-}
-
-// gravityFactor is (SG + add − 1)/(reference − 1) in exact decimals, and never below 1.
-func gravityFactor(sg float64, g *SpecificGravityRule) float64 {
-	if sg <= g.ApplyAbove {
-		return 1
-	}
-	num := decimal(sg)
-	num.Add(num, decimal(g.Add)).Sub(num, decimal(1))
-	den := decimal(g.Reference)
-	den.Sub(den, decimal(1))
-	f, _ := num.Quo(num, den).Float64()
-	return max(1, f)
+	return nil
 }
 
 // outcomeOf compares the rounded value with the decision limit, and the value itself with the threshold.
 func outcomeOf(limit *Limit, rule *LimitRule) Outcome {
-	above := limit.Compared > limit.DecisionLimit || rule.Compare == "at-or-above" && limit.Compared == limit.DecisionLimit
-	over := limit.Value > limit.Threshold || rule.Compare == "at-or-above" && limit.Value == limit.Threshold
+	reaches := func(v, at float64) bool { return v > at || rule.Compare == "at-or-above" && v == at }
 	switch {
-	case above:
+	case reaches(limit.Compared, limit.DecisionLimit):
 		return AboveLimit
-	case over:
+	case reaches(limit.Value, limit.Threshold):
 		return WithinGuardBand
 	}
 	return BelowThreshold
 }
 
-func (j *judge) limitCheck(a *evidence.Analyte, limit *Limit, outcome Outcome, rule *LimitRule, at string) {
-	c := Check{ID: a.ID + "/decision-limit", Group: "limit", Title: "Value against the decision limit", Result: Passed, Measured: nanograms(limit.Compared),
-		High: nanograms(limit.DecisionLimit), Evidence: []string{at + "/result/ng_per_ml"}}
-	c = c.cited(rule.Cite)
-	words := map[Outcome]string{
+func (b *batchJudge) startLimit(name, title string, required bool, evidence ...string) Check {
+	c := b.start(name, title, required, evidence...)
+	c.Group = "limit"
+	return c
+}
+
+// limitCheck states the comparison. It passes where it could be made: what comes out of it is the outcome.
+func (b *batchJudge) limitCheck(limit *Limit, outcome Outcome, rule *LimitRule) {
+	c := b.startLimit("decision-limit", "Value against the decision limit", false, b.at+"/result/ng_per_ml").cited(rule.Cite).passIf(true)
+	value, ends := apart(b.amount, limit.Compared, limit.DecisionLimit, limit.Threshold)
+	c.Measured, c.High = value, ends[0]
+	where := map[Outcome]string{
 		AboveLimit:      "lies above the decision limit",
 		WithinGuardBand: "lies above the threshold and not above the decision limit",
 		BelowThreshold:  "does not lie above the threshold",
 	}
-	if rule.Compare == "at-or-above" {
-		words[AboveLimit] = "is at or above the decision limit"
-		words[BelowThreshold] = "lies below the threshold"
+	if !limit.Strict {
+		where = map[Outcome]string{
+			AboveLimit:      "is at or above the decision limit",
+			WithinGuardBand: "is at or above the threshold and below the decision limit",
+			BelowThreshold:  "lies below the threshold",
+		}
 	}
-	c.Sentence = fmt.Sprintf("The value for the comparison, %s, %s (threshold %s, decision limit %s).", c.Measured.Text, words[outcome], nanograms(limit.Threshold).Text, c.High.Text)
-	j.add(c)
-	if rule.Guard == "stated" && rule.MaxStdU != nil {
-		j.plausible(a, limit, rule)
+	c.Sentence = fmt.Sprintf("The value for the comparison, %s, %s (threshold %s, decision limit %s).", value.Text, where[outcome], ends[1].Text, ends[0].Text)
+	if limit.Compared != limit.Value && outcome == WithinGuardBand {
+		c.Sentence = fmt.Sprintf("The value, %s before rounding and %s for the comparison, %s (threshold %s, decision limit %s).", b.amount(limit.Value, 2).Text, value.Text, where[outcome], ends[1].Text, ends[0].Text)
 	}
+	b.add(c)
 }
 
-// plausible compares the stated limit with threshold + k·u_max, rounded up to the digits of the rule. It is advisory: editions
-// have rounded otherwise, and the stated limit applies.
-func (j *judge) plausible(a *evidence.Analyte, limit *Limit, rule *LimitRule) {
-	k := 1.645
-	if rule.GuardK != nil {
-		k = *rule.GuardK
+// notCompared says that nothing is made of the value, since something that it needs does not hold.
+func (b *batchJudge) notCompared() {
+	c := b.startLimit("decision-limit", "Value against the decision limit", false, b.at).custom("a value is compared once everything required holds")
+	b.add(c.notApplicable("Nothing is compared with the decision limit, since a required check does not hold."))
+}
+
+// plausible compares a stated limit with threshold + k·u_max, rounded up to the digits of the rule. It is advisory: editions have
+// rounded otherwise, and the stated limit applies.
+func (b *batchJudge) plausible(rule *LimitRule) {
+	if rule.Guard != "stated" || rule.GuardK == nil || rule.MaxStdU == nil || rule.Digits == 0 {
+		return
 	}
-	raw, _ := add(rule.Threshold, float64(k**rule.MaxStdU))
-	expected := roundValue(raw, "up", max(rule.Digits, 2))
-	c := Check{ID: a.ID + "/decision-limit-plausible", Group: "limit", Title: "Stated limit against its own rule", Measured: nanograms(*rule.DecisionLimit), Low: nanograms(expected), High: nanograms(expected)}
-	c = c.cited(rule.Cite).passIf(*rule.DecisionLimit == expected)
-	c.Sentence = fmt.Sprintf("The stated decision limit is %s; threshold + %g × largest uncertainty, rounded up, gives %s. The stated limit is applied.", c.Measured.Text, k, nanograms(expected).Text)
-	j.add(c)
+	expected := expectedLimit(rule)
+	c := b.startLimit("decision-limit-plausible", "Stated limit against its own rule", false, b.at).cited(rule.Cite).passIf(*rule.DecisionLimit == expected)
+	c.Measured, c.Low, c.High = b.amount(*rule.DecisionLimit, 0), b.amount(expected, 0), b.amount(expected, 0)
+	c.Sentence = fmt.Sprintf("The stated decision limit is %s; threshold + %g × largest uncertainty, rounded up to %d digits, gives %s. The stated limit is applied.", c.Measured.Text, *rule.GuardK, rule.Digits, c.Low.Text)
+	b.add(c)
+}
+
+// expectedLimit is threshold + k·u_max, rounded up.
+func expectedLimit(rule *LimitRule) float64 {
+	band := decimal(*rule.GuardK)
+	band.Mul(band, decimal(*rule.MaxStdU)).Add(band, decimal(rule.Threshold))
+	raw, _ := band.Float64()
+	return roundValue(raw, "up", rule.Digits)
 }
 
 func roundingText(rule *LimitRule) string {

@@ -39,64 +39,39 @@ func roundValue(v float64, rule string, digits int) float64 {
 	}
 	unit := significant(v, digits)
 	q := new(big.Rat).Quo(decimal(v), unit)
-	whole := new(big.Int).Quo(q.Num(), q.Denom()) // towards zero
-	rest := new(big.Rat).Sub(q, new(big.Rat).SetInt(whole))
-	sign := int64(rest.Sign())
-	rest.Abs(rest)
-	switch half := rest.Cmp(big.NewRat(1, 2)); {
-	case rule == "up" && sign != 0,
-		rule == "half-even" && (half > 0 || half == 0 && whole.Bit(0) == 1):
-		whole.Add(whole, big.NewInt(sign))
+	var whole *big.Rat
+	switch rule {
+	case "truncate":
+		whole, _ = truncated(q)
+	case "half-even":
+		whole = roundHalfEven(q)
+	case "up":
+		var rest *big.Rat
+		whole, rest = truncated(q)
+		whole.Add(whole, big.NewRat(int64(rest.Sign()), 1))
+	default:
+		panic("decision: internal error: rounding " + rule)
 	}
-	out, _ := new(big.Rat).Mul(new(big.Rat).SetInt(whole), unit).Float64()
+	out, _ := whole.Mul(whole, unit).Float64()
 	return out
 }
 
-// Text writes v for people with at most a number of significant digits, rounded half to even, without an exponent from 0.0001 to
-// 10^9. A value that has fewer digits is written as it is: 5, not 5.00.
-func Text(v float64, digits int) string {
-	if v == 0 {
-		return "0"
-	}
-	if short := strconv.FormatFloat(v, 'f', -1, 64); len(strings.Trim(strings.Replace(strings.TrimLeft(short, "-0."), ".", "", 1), "0")) < digits && math.Abs(v) >= 1e-4 && math.Abs(v) < 1e9 {
-		return short
-	}
-	r := roundValue(v, "half-even", digits)
-	if a := math.Abs(r); a < 1e-4 || a >= 1e9 {
-		return strconv.FormatFloat(r, 'e', digits-1, 64)
-	}
-	return fixed(r, places(r, digits))
-}
-
-// places is the number of decimals that leave digits significant digits of r, none for large numbers.
-func places(r float64, digits int) int {
-	text := strconv.FormatFloat(math.Abs(r), 'e', -1, 64)
-	exp, _ := strconv.Atoi(text[strings.IndexByte(text, 'e')+1:])
-	return max(0, digits-1-exp)
-}
-
-func fixed(v float64, decimals int) string { return decimal(v).FloatString(decimals) }
-
-// TextWithU writes a value and its uncertainty for people: the uncertainty to two significant digits and the value to the same
-// place (GUM 7.2.6).
-func TextWithU(v, u float64) (value, uncertainty string) {
-	if !(u > 0) {
-		return Text(v, 3), Text(u, 2)
-	}
-	ru := roundValue(u, "half-even", 2)
-	unit := significant(ru, 2)
-	q := new(big.Rat).Quo(decimal(v), unit)
-	rounded := new(big.Rat).Mul(roundHalfEven(q), unit)
-	decimals := places(ru, 2)
-	return rounded.FloatString(decimals), fixed(ru, decimals)
+// truncated cuts q towards zero and returns what is left, which has the sign of q.
+func truncated(q *big.Rat) (whole, rest *big.Rat) {
+	whole = new(big.Rat).SetInt(new(big.Int).Quo(q.Num(), q.Denom()))
+	return whole, new(big.Rat).Sub(q, whole)
 }
 
 func roundHalfEven(q *big.Rat) *big.Rat {
-	whole := new(big.Int).Quo(q.Num(), q.Denom())
-	rest := new(big.Rat).Sub(q, new(big.Rat).SetInt(whole))
+	whole, rest := truncated(q)
 	sign := int64(rest.Sign())
-	if half := rest.Abs(rest).Cmp(big.NewRat(1, 2)); half > 0 || half == 0 && whole.Bit(0) == 1 {
-		whole.Add(whole, big.NewInt(sign))
+	if half := rest.Abs(rest).Cmp(big.NewRat(1, 2)); half > 0 || half == 0 && whole.Num().Bit(0) == 1 {
+		whole.Add(whole, big.NewRat(sign, 1))
 	}
-	return new(big.Rat).SetInt(whole)
+	return whole
 }
+
+// The exact arithmetic of limits: shortest decimals in, the nearest double out.
+func mul(a, b float64) (float64, bool) { r := decimal(a); return r.Mul(r, decimal(b)).Float64() }
+func add(a, b float64) (float64, bool) { r := decimal(a); return r.Add(r, decimal(b)).Float64() }
+func sub(a, b float64) (float64, bool) { r := decimal(a); return r.Sub(r, decimal(b)).Float64() }

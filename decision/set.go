@@ -1,16 +1,5 @@
 package decision
 
-import (
-	"embed"
-	"fmt"
-	"io/fs"
-	"path"
-	"slices"
-	"strings"
-
-	"assaywrit/evidence/strictyaml"
-)
-
 // A Set is a criteria set, format assaywrit-criteria/1: the rules of one edition as data. Every rule names its source and whether it
 // was read there or comes from memory; a rule without a source is not loaded. Fractions are of 1, times in minutes, amounts in ng/mL.
 type Set struct {
@@ -23,17 +12,50 @@ type Set struct {
 	Matrix        string   `key:"matrix" doc:"Such as urine."`
 	Notes         []string `key:"notes,optional"`
 
+	Case           CaseRules           `key:"case" doc:"What is asked of the case as a whole."`
 	Identification IdentificationRules `key:"identification"`
 	Quantity       QuantityRules       `key:"quantity"`
 	Limits         []LimitRule         `key:"limits" doc:"Substances that are compared with a threshold."`
 	Presence       PresenceRule        `key:"presence" doc:"Substances that are reported by presence alone."`
 	Labels         Labels              `key:"labels" doc:"What readers see for each outcome."`
+	Meanings       *Labels             `key:"meanings,optional" doc:"A sentence for each outcome on what it means, the same for every sample."`
 }
 
 // A Cite says where a rule comes from.
 type Cite struct {
 	Clause string `key:"clause" doc:"Document and clause."`
 	Tag    string `key:"tag" enum:"read|read-2|from memory|common practice, no source" doc:"read: seen in the source; read-2: in a secondary source."`
+}
+
+// source is the tag as it stands beside a value that is applied.
+func (c Cite) source() string {
+	if c.Tag == "from memory" {
+		return "from memory; check against the edition in force"
+	}
+	return c.Tag
+}
+
+// text is the clause and the source in one.
+func (c Cite) text() string { return c.Clause + " (" + c.source() + ")" }
+
+// or returns the citation, or another where there is none.
+func (c *Cite) or(other Cite) Cite {
+	if c == nil {
+		return other
+	}
+	return *c
+}
+
+// CaseRules are about the case and not about a substance.
+type CaseRules struct {
+	Receipt  Rule `key:"receipt" doc:"The chain of custody must hold the receipt of the container."`
+	Material Rule `key:"material_in_date" doc:"Reference materials must be used before they expire."`
+}
+
+// A Rule is required or advisory.
+type Rule struct {
+	Required bool `key:"required" doc:"false: advisory."`
+	Cite
 }
 
 // A Tolerance is how far a value may lie from its reference. With both an absolute and a relative part, the kind says which counts.
@@ -61,14 +83,24 @@ type NumberRule struct {
 	Cite
 }
 
+// IdentificationRules are the criteria for identity.
 type IdentificationRules struct {
+	Reference         Rule       `key:"reference_in_batch" doc:"A reference must have been measured in the same batch."`
 	SignalToNoise     NumberRule `key:"signal_to_noise" doc:"At least, for each ion."`
 	Transitions       NumberRule `key:"transitions" doc:"Transitions that must be monitored, the quantifier among them."`
 	Retention         Tolerance  `key:"retention"`
 	RelativeRetention Tolerance  `key:"relative_retention" doc:"To the internal standard."`
+	Replacement       Allowance  `key:"relative_replaces_retention" doc:"Whether relative retention may take the place of retention."`
 	Abundance         []Band     `key:"abundance" minitems:"1" doc:"Bands from the highest reference abundance down."`
 }
 
+// An Allowance is something that a set allows or not.
+type Allowance struct {
+	Allowed bool `key:"allowed"`
+	Cite
+}
+
+// QuantityRules are those for every amount.
 type QuantityRules struct {
 	Aliquots       NumberRule           `key:"aliquots" doc:"Aliquots that a quantitative result needs."`
 	CoverageFactor NumberRule           `key:"coverage_factor" doc:"k of the expanded uncertainty."`
@@ -83,19 +115,23 @@ type SpecificGravityRule struct {
 	Cite
 }
 
-// A LimitRule is the comparison with a threshold.
+// A LimitRule is the comparison with a threshold. Its citation stands for every value in it that has none of its own.
 type LimitRule struct {
 	Analyte       string   `key:"analyte" doc:"Id, as in methods."`
 	Threshold     float64  `key:"threshold" unit:"ng/mL" above:"0"`
 	MaxStdU       *float64 `key:"max_std_u,optional" unit:"ng/mL" above:"0" doc:"Largest combined standard uncertainty allowed at the threshold."`
 	DecisionLimit *float64 `key:"decision_limit,optional" unit:"ng/mL" above:"0" doc:"As the edition states it; it is applied as it stands."`
-	Guard         string   `key:"guard" enum:"none|stated|k-times-u" doc:"none: the threshold itself decides; stated: the stated limit; k-times-u: threshold + k·u of the result."`
-	GuardK        *float64 `key:"guard_k,optional" above:"0" doc:"k of the guard band."`
+	Guard         string   `key:"guard" enum:"none|stated|k-times-u|k-times-max-u" doc:"none: the threshold itself decides; stated: the stated limit; k-times-u: threshold + k·u of the result; k-times-max-u: threshold + k·max_std_u."`
+	GuardK        *float64 `key:"guard_k,optional" above:"0" doc:"k of the guard band; beside a stated limit it serves to see whether the limit is plausible."`
 	Compare       string   `key:"compare" enum:"greater|at-or-above"`
 	Rounding      string   `key:"rounding" enum:"none|truncate|half-even" doc:"What is done to the value before it is compared."`
 	Digits        int      `key:"significant_digits,optional" min:"1" max:"6" doc:"Digits that the rounding leaves."`
 	Gravity       bool     `key:"specific_gravity" doc:"true: the limit is adjusted for specific gravity."`
 	Cite
+
+	ThresholdSource     *Cite `key:"threshold_source,optional" doc:"Source of the threshold, where it differs."`
+	MaxStdUSource       *Cite `key:"max_std_u_source,optional" doc:"Source of the largest uncertainty, where it differs."`
+	DecisionLimitSource *Cite `key:"decision_limit_source,optional" doc:"Source of the decision limit, where it differs."`
 }
 
 // A PresenceRule says which analytes may be reported by presence.
@@ -104,6 +140,7 @@ type PresenceRule struct {
 	Cite
 }
 
+// Labels is a text for each outcome.
 type Labels struct {
 	NotDetermined   string `key:"not_determined"`
 	AboveLimit      string `key:"above_limit"`
@@ -128,97 +165,6 @@ func (l Labels) Of(o Outcome) string {
 		return l.NotIdentified
 	}
 	return l.NotDetermined
-}
-
-//go:embed criteria
-var builtIn embed.FS
-
-// BuiltInNames lists the built-in sets.
-func BuiltInNames() []string {
-	files, err := fs.Glob(builtIn, "criteria/*.yaml")
-	if err != nil {
-		panic("decision: internal error: " + err.Error())
-	}
-	for i, f := range files {
-		files[i] = strings.TrimSuffix(path.Base(f), ".yaml")
-	}
-	return files
-}
-
-// BuiltIn returns the text of a built-in set.
-func BuiltIn(name string) ([]byte, bool) {
-	if !slices.Contains(BuiltInNames(), name) {
-		return nil, false
-	}
-	data, err := builtIn.ReadFile("criteria/" + name + ".yaml")
-	return data, err == nil
-}
-
-// SchemaJSON is the JSON Schema of a criteria set.
-func SchemaJSON() ([]byte, error) {
-	return strictyaml.Schema("urn:assaywrit:schema:criteria:1", "A criteria set", Set{})
-}
-
-// Parse reads a criteria set. The error is strictyaml.Problems with everything that is wrong.
-func Parse(name string, data []byte) (*Set, error) {
-	set := &Set{}
-	doc, problems := strictyaml.Bind(name, data, set)
-	if len(problems) > 0 {
-		return nil, problems
-	}
-	report := func(key, got, want string) { problems = append(problems, doc.Problem(key, got, want, "")) }
-	set.check(report)
-	if len(problems) > 0 {
-		return nil, problems
-	}
-	return set, nil
-}
-
-// check looks at rules together.
-func (s *Set) check(report func(key, got, want string)) {
-	parts := func(key, kind string, absolute, relative *float64) {
-		both := kind == "greater-of" || kind == "smaller-of"
-		if (absolute != nil) != (both || kind == "absolute") || (relative != nil) != (both || kind == "relative") {
-			report(key, "a tolerance of kind "+kind+" with other parts", "absolute, relative, or both for greater-of and smaller-of")
-		}
-	}
-	id := s.Identification
-	parts("identification.retention", id.Retention.Kind, id.Retention.AbsoluteMin, id.Retention.Relative)
-	parts("identification.relative_retention", id.RelativeRetention.Kind, id.RelativeRetention.AbsoluteMin, id.RelativeRetention.Relative)
-	if id.RelativeRetention.AbsoluteMin != nil {
-		report("identification.relative_retention", "an absolute part in minutes", "a relative tolerance: relative retention has no unit")
-	}
-	for i, b := range id.Abundance {
-		key := fmt.Sprintf("identification.abundance[%d]", i)
-		parts(key, b.Kind, b.Absolute, b.Relative)
-		if i > 0 && b.From >= id.Abundance[i-1].From {
-			report(key+".from", fmt.Sprint(b.From), fmt.Sprintf("less than %g, the edge of the band above", id.Abundance[i-1].From))
-		}
-	}
-	if last := id.Abundance[len(id.Abundance)-1]; last.From != 0 {
-		report(fmt.Sprintf("identification.abundance[%d].from", len(id.Abundance)-1), fmt.Sprint(last.From), "0 %, so that the bands cover every abundance")
-	}
-	for i, l := range s.Limits {
-		s.checkLimit(fmt.Sprintf("limits[%d]", i), l, i, report)
-	}
-}
-
-func (s *Set) checkLimit(key string, l LimitRule, i int, report func(key, got, want string)) {
-	switch {
-	case l.Guard == "stated" && l.DecisionLimit == nil:
-		report(key, "a stated guard band without a decision_limit", "the decision_limit that the edition states")
-	case l.Guard == "k-times-u" && l.GuardK == nil:
-		report(key, "a guard band of k times u without guard_k", "guard_k")
-	case l.DecisionLimit != nil && *l.DecisionLimit < l.Threshold:
-		report(key+".decision_limit", fmt.Sprint(*l.DecisionLimit), "at least the threshold")
-	case l.Rounding != "none" && l.Digits == 0:
-		report(key, "a rounding without significant_digits", "how many digits it leaves")
-	case l.Gravity && s.Quantity.Gravity == nil:
-		report(key+".specific_gravity", "true", "false, or the rule quantity.specific_gravity")
-	}
-	if slices.ContainsFunc(s.Limits[:i], func(o LimitRule) bool { return o.Analyte == l.Analyte }) {
-		report(key+".analyte", l.Analyte+" a second time", "each analyte once")
-	}
 }
 
 // limitFor returns the rule for an analyte, or nil.

@@ -2,8 +2,11 @@ package decision
 
 import "math"
 
-// A window is an accepted range, both ends included.
-type window struct{ low, high float64 }
+// A window is an accepted range, both ends included. What is shown of it may begin at a floor, below which no value can lie.
+type window struct {
+	low, high float64
+	floor     *float64
+}
 
 // halfWidth is the tolerance either side of a reference: "greater-of" and "smaller-of" take the larger and the smaller of the
 // absolute and the relative part.
@@ -22,8 +25,10 @@ func halfWidth(kind string, absolute, relative *float64, reference float64) floa
 		return r
 	case "greater-of":
 		return max(a, r)
+	case "smaller-of":
+		return min(a, r)
 	}
-	return min(a, r)
+	panic("decision: internal error: tolerance of kind " + kind)
 }
 
 // around is the window about a reference. The ends are written in decimal, so that 0.60 ± 0.10 ends at exactly 0.7 and a value
@@ -31,10 +36,17 @@ func halfWidth(kind string, absolute, relative *float64, reference float64) floa
 func around(reference, half float64) window {
 	low, _ := sub(reference, half)
 	high, _ := add(reference, half)
-	return window{low, high}
+	return window{low: low, high: high}
 }
 
 func (w window) holds(v float64) bool { return v >= w.low && v <= w.high }
+
+func (w window) shownLow() float64 {
+	if w.floor != nil {
+		return max(w.low, *w.floor)
+	}
+	return w.low
+}
 
 // distance is how far inside the window v lies, as a share of the half width: 1 at the centre, 0 at an end, negative outside.
 func (w window) distance(v float64) float64 {
@@ -44,10 +56,6 @@ func (w window) distance(v float64) float64 {
 	}
 	return 1 - math.Abs(v-(w.low+w.high)/2)/half
 }
-
-func mul(a, b float64) (float64, bool) { r := decimal(a); return r.Mul(r, decimal(b)).Float64() }
-func add(a, b float64) (float64, bool) { r := decimal(a); return r.Add(r, decimal(b)).Float64() }
-func sub(a, b float64) (float64, bool) { r := decimal(a); return r.Sub(r, decimal(b)).Float64() }
 
 // bandFor returns the band of a reference abundance: the first, from the top, whose lower edge it lies above (or on, where the
 // edge belongs to the band). The lowest band takes what is left.
