@@ -4,50 +4,45 @@ import (
 	"image"
 	"image/color"
 	"math"
-	"strconv"
 
-	"github.com/jung-kurt/gofpdf"
 	"gonum.org/v1/plot/font"
 	"gonum.org/v1/plot/vg"
 )
 
-// A canvas draws charts on a page of the PDF: gonum/plot writes to it, and it writes PDF operators. Both have their origin at the
-// bottom left and count in points, so coordinates go through one matrix of our own and nothing else.
+// A canvas lets gonum/plot draw with a pen. plot and PDF both have their origin at the bottom left and count in points, so
+// coordinates go through one matrix of our own and nothing else.
 type canvas struct {
-	pdf    *gofpdf.Fpdf
-	height float64 // of the page, points
-	state  canvasState
-	stack  []canvasState
-	out    []byte
+	pen   *pen
+	state canvasState
+	stack []canvasState
 }
 
 type canvasState struct {
 	m     [6]float64 // x' = m0·x + m2·y + m4, y' = m1·x + m3·y + m5
 	width float64
-	dash  []vg.Length
-	phase vg.Length
-	color color.Color
+	dash  dash
+	color color.RGBA
 }
 
-const pointsPerMM = 72 / 25.4
-
-// newCanvas is a canvas whose origin lies at the bottom left of a rectangle, given in millimetres from the top of the page.
-func newCanvas(pdf *gofpdf.Fpdf, x, y, h float64) *canvas {
-	_, pageH := pdf.GetPageSize()
-	c := &canvas{pdf: pdf, height: pageH * pointsPerMM}
-	c.state = canvasState{m: [6]float64{1, 0, 0, 1, x * pointsPerMM, (pageH - y - h) * pointsPerMM}, width: 1, color: color.Black}
-	return c
+// newCanvas is a canvas whose origin lies at the bottom left of a rectangle, given in millimetres from the top left of the page.
+func newCanvas(p *pen, x, y, h float64) *canvas {
+	return &canvas{pen: p, state: canvasState{m: [6]float64{1, 0, 0, 1, x * pointsPerMM, (pageH - y - h) * pointsPerMM}, width: 1, color: ink}}
 }
 
 func (c *canvas) SetLineWidth(w vg.Length) { c.state.width = float64(w) }
-func (c *canvas) SetLineDash(dash []vg.Length, phase vg.Length) {
-	c.state.dash, c.state.phase = dash, phase
-}
-func (c *canvas) SetColor(col color.Color) {
-	if col == nil {
-		col = color.Black
+
+func (c *canvas) SetLineDash(d []vg.Length, _ vg.Length) {
+	c.state.dash = whole
+	if len(d) > 0 {
+		c.state.dash = dash{float64(d[0]), float64(d[len(d)-1])}
 	}
-	c.state.color = col
+}
+
+func (c *canvas) SetColor(col color.Color) {
+	c.state.color = ink
+	if col != nil {
+		c.state.color = color.RGBAModel.Convert(col).(color.RGBA)
+	}
 }
 
 func (c *canvas) Rotate(rad float64) {
@@ -78,57 +73,22 @@ func (c *canvas) at(p vg.Point) (x, y float64) {
 	return m[0]*float64(p.X) + m[2]*float64(p.Y) + m[4], m[1]*float64(p.X) + m[3]*float64(p.Y) + m[5]
 }
 
-func (c *canvas) num(v float64) {
-	c.out = strconv.AppendFloat(c.out, math.Round(v*100)/100, 'f', -1, 64)
-	c.out = append(c.out, ' ')
-}
-
-func (c *canvas) op(s string) { c.out = append(c.out, s...) }
-
-func (c *canvas) flush() {
-	c.pdf.RawWriteStr(string(c.out))
-	c.out = c.out[:0]
-}
-
-func (c *canvas) rgb(op string) {
-	r, g, b, _ := c.state.color.RGBA()
-	for _, v := range []uint32{r, g, b} {
-		c.num(float64(v) / 0xffff)
-	}
-	c.op(op)
-}
-
 func (c *canvas) Stroke(p vg.Path) {
 	if c.state.width <= 0 || len(p) == 0 {
 		return
 	}
-	c.op("q ")
-	c.rgb("RG ")
-	c.num(c.state.width)
-	c.op("w 1 J 1 j ")
-	if len(c.state.dash) > 0 {
-		c.op("[")
-		for _, d := range c.state.dash {
-			c.num(float64(d))
-		}
-		c.op("] ")
-		c.num(float64(c.state.phase))
-		c.op("d ")
-	}
+	c.pen.setLine(c.state.color, c.state.width, c.state.dash)
 	c.path(p)
-	c.op("S Q")
-	c.flush()
+	c.pen.op("S\n")
 }
 
 func (c *canvas) Fill(p vg.Path) {
 	if len(p) == 0 {
 		return
 	}
-	c.op("q ")
-	c.rgb("rg ")
+	c.pen.setFill(c.state.color)
 	c.path(p)
-	c.op("f Q")
-	c.flush()
+	c.pen.op("f\n")
 }
 
 func (c *canvas) path(p vg.Path) {
@@ -144,7 +104,7 @@ func (c *canvas) path(p vg.Path) {
 		case vg.ArcComp:
 			c.arc(comp)
 		case vg.CloseComp:
-			c.op("h ")
+			c.pen.op("h ")
 		}
 		last = comp.Pos
 	}
@@ -152,9 +112,9 @@ func (c *canvas) path(p vg.Path) {
 
 func (c *canvas) point(p vg.Point, op string) {
 	x, y := c.at(p)
-	c.num(x)
-	c.num(y)
-	c.op(op)
+	c.pen.num(x)
+	c.pen.num(y)
+	c.pen.op(op)
 }
 
 // curve writes a cubic, or a quadratic as the cubic that it is.
@@ -184,23 +144,14 @@ func (c *canvas) arc(comp vg.PathComp) {
 	}
 }
 
-// FillString uses the PDF library's own text, so that signs get into the embedded font and stay text. Text that is turned is set
-// through a transformation.
+// FillString sets text level, whatever the canvas was turned by: no chart here turns it, and plot's axes with turned labels are not used.
 func (c *canvas) FillString(f font.Face, p vg.Point, s string) {
-	x, y := c.at(p)
-	angle := math.Atan2(c.state.m[1], c.state.m[0]) * 180 / math.Pi
-	mmX, mmY := x/pointsPerMM, (c.height-y)/pointsPerMM
-	r, g, b, _ := c.state.color.RGBA()
-	c.pdf.SetFont(family, "", f.Font.Size.Points())
-	c.pdf.SetTextColor(int(r>>8), int(g>>8), int(b>>8))
-	if math.Abs(angle) < 0.01 {
-		c.pdf.Text(mmX, mmY, clean(s))
-		return
+	if math.Abs(c.state.m[1]) > 1e-9 {
+		panic("render: internal error: turned text in a chart: " + s)
 	}
-	c.pdf.TransformBegin()
-	c.pdf.TransformRotate(angle, mmX, mmY)
-	c.pdf.Text(mmX, mmY, clean(s))
-	c.pdf.TransformEnd()
+	x, y := c.at(p)
+	c.pen.font(regular, f.Font.Size.Points())
+	c.pen.text(x*mmPerPoint, pageH-y*mmPerPoint, s, c.state.color)
 }
 
 // DrawImage is part of the interface; charts here are lines and text.

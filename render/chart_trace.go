@@ -2,148 +2,164 @@ package render
 
 import (
 	"fmt"
-	"math"
-	"sort"
-
-	"gonum.org/v1/plot/vg"
-	"gonum.org/v1/plot/vg/draw"
+	"image/color"
 
 	"assaywrit/evidence"
 	"assaywrit/evidence/peak"
 )
 
-// maxColumns bounds how many points a chart draws: beyond it, each column is drawn by its first, lowest, highest and last point.
-const maxColumns = 600
+// Chromatograms are drawn straight with the pen: there are hundreds in a package, and all they need is a frame of two axes.
 
-// traceChart draws one measurement with its baseline and limits, and its figures above it.
-func (d *document) traceChart(inj *evidence.Injection, m *evidence.Measurement, x, y, w, h float64) {
-	d.font("B", sizeSmall)
-	d.color(ink)
-	d.put(x, y+2.6, m.Compound)
-	head := d.width(m.Compound) + 1.5
-	d.font("", 6.8)
-	d.color(soft)
-	d.put(x+head, y+2.6, fmt.Sprintf("%s  %s", m.Trace, ions(m)))
-	d.put(x, y+5.8, figures(m))
-	c, ok := d.in.Traces.Chromatogram(inj.File, m.TraceID)
-	if !ok || len(c.TimeMin) == 0 {
-		d.put(x, y+12, d.words.get("trace-missing"))
-		return
-	}
-	from, to := drawnRange(m)
-	lo := sort.SearchFloat64s(c.TimeMin, from)
-	hi := sort.Search(len(c.TimeMin), func(i int) bool { return c.TimeMin[i] > to })
-	ts, ys := c.TimeMin[lo:hi], c.Intensity[lo:hi]
-	if len(ts) < 2 {
-		return
-	}
-	low, high := extent(ys)
-	pt, py := thinned(ts, ys)
-	p := newPlot()
-	axes(p, from, to, low-(high-low)*0.04, high+(high-low)*0.10, 5, 5)
-	p.Add(traceLayer{ts, ys, pt, py, m}.layer())
-	d.drawPlot(p, x-1, y+6.6, w, h-6.6)
-	if len(pt) < len(ts) {
-		d.font("", 5.5)
-		d.color(soft)
-		d.putRight(x+w-2, y+h+0.6, fmt.Sprintf("%d points drawn of %d", len(pt), len(ts)))
-	}
+// A traceChart is one measurement in a rectangle of the page.
+type traceChart struct {
+	d          *document
+	file       string
+	m          *evidence.Measurement
+	span       span
+	x, y, w, h float64
+	large      bool
+	used       *peak.Peak   // the peak that is drawn as the one used
+	title      string       // what is followed
+	figures    string       // what was measured
+	other      []*peak.Peak // drawn dashed
+
+	ts, ys []float64 // points in the stretch
+	xs     scale
+	vs     scale
 }
 
-func ions(m *evidence.Measurement) string {
-	if m.Transition.ProductMZ == 0 {
-		return m.TraceID
+// Room of a chart around its axes, millimetres.
+const (
+	chartHead   = 7.6
+	chartLabels = 8.5 // of counts, at the left
+	chartFoot   = 7.2
+)
+
+// chart sets up a measurement's chart with the peak that was used.
+func (d *document) chart(inj *evidence.Injection, m *evidence.Measurement, s span, x, y, w, h float64, large bool) *traceChart {
+	c := &traceChart{d: d, file: inj.File, m: m, span: s, x: x, y: y, w: w, h: h, large: large, used: m.Peak, title: d.ionTitle(m), figures: d.figures(m, m.Peak, m.Manual != nil)}
+	for i := range m.Others {
+		c.other = append(c.other, &m.Others[i])
 	}
-	return fmt.Sprintf("m/z %.1f → %.1f", m.Transition.PrecursorMZ, m.Transition.ProductMZ)
+	if m.Automatic != nil {
+		c.other = append(c.other, m.Automatic)
+	}
+	return c
+}
+
+// ionTitle names what a trace followed.
+func (d *document) ionTitle(m *evidence.Measurement) string {
+	name := d.words.or("trace.", m.Trace)
+	if m.Transition.ProductMZ == 0 {
+		return name + "  " + m.TraceID
+	}
+	return name + "  " + fmt.Sprintf("%.1f → %.1f", m.Transition.PrecursorMZ, m.Transition.ProductMZ)
 }
 
 // figures tells what was measured, or that no peak was found.
-func figures(m *evidence.Measurement) string {
-	if m.Peak == nil {
-		return fmt.Sprintf("no peak in the window, noise %s counts", compact(m.Noise, 3))
+func (d *document) figures(m *evidence.Measurement, p *peak.Peak, byHand bool) string {
+	if p == nil {
+		return d.t("chart.no-peak", "noise", powered(m.Noise, 3))
 	}
-	how := ""
-	if m.Manual != nil {
-		how = "  set by hand"
+	text := d.t("chart.figures", "rt", fixed(p.ApexMin, 3), "area", powered(p.Area, 4), "sn", number(p.SignalToNoise, 3))
+	if byHand {
+		text += d.t("chart.by-hand")
 	}
-	return fmt.Sprintf("RT %.3f min  area %s  S/N %s%s", m.Peak.ApexMin, compact(m.Peak.Area, 4), number(m.Peak.SignalToNoise, 3), how)
+	for _, f := range p.Flags {
+		text += ", " + d.words.or("flag.", f)
+	}
+	return text
 }
 
-// drawnRange is the search window with as much on either side, within what was recorded.
-func drawnRange(m *evidence.Measurement) (from, to float64) {
-	w := m.WindowEndMin - m.WindowStartMin
-	from, to = m.WindowStartMin-w, m.WindowEndMin+w
-	if m.Peak != nil {
-		from, to = min(from, m.Peak.StartMin-w/4), max(to, m.Peak.EndMin+w/4)
+// draw draws the chart, and returns the number of points drawn and recorded.
+func (c *traceChart) draw() {
+	d := c.d
+	small := c.w - 0.5
+	d.font(bold, sizeChart)
+	d.fit(c.x, c.y+2.6, small, c.title, ink)
+	d.font(regular, sizeChart)
+	d.fit(c.x, c.y+5.6, small, c.figures, ink)
+	rec, ok := d.in.Traces.Chromatogram(c.file, c.m.TraceID)
+	if ok {
+		c.ts, c.ys = within(rec, c.span)
 	}
-	return max(from, m.FirstMin), min(to, m.LastMin)
+	if len(c.ts) < 2 {
+		d.fit(c.x, c.y+11, small, d.t("chart.missing"), accent)
+		return
+	}
+	low, high, largest := counts(c.ys)
+	c.xs = scale{c.span.from, c.span.to, c.x + chartLabels, c.x + c.w - 1}
+	c.vs = scale{low, high, c.y + c.h - chartFoot, c.y + chartHead + 2.4}
+	pt, py := thinned(c.ts, c.ys)
+	c.window()
+	if c.used != nil {
+		c.area(c.used)
+	}
+	c.axes(low, high)
+	d.setLine(signal, map[bool]float64{true: 0.7, false: 0.55}[c.large], whole)
+	for i := range pt {
+		op := "l\n"
+		if i == 0 {
+			op = "m\n"
+		}
+		d.point(c.xs.at(pt[i]), c.vs.at(py[i]), op)
+	}
+	d.op("S\n")
+	for _, p := range c.other {
+		c.limits(p, soft, true)
+	}
+	if c.used != nil {
+		c.limits(c.used, accent, false)
+	}
+	c.foot(largest, len(pt), rec.TimeMin)
 }
 
-func extent(ys []float64) (low, high float64) {
-	low, high = math.Inf(1), math.Inf(-1)
-	for _, y := range ys {
-		low, high = min(low, y), max(high, y)
+// foot states the scale and how many points are drawn.
+func (c *traceChart) foot(largest float64, drawn int, recorded []float64) {
+	d := c.d
+	d.font(regular, 6.5)
+	d.textRight(c.xs.p1, c.vs.p1-0.5, d.t("chart.largest", "counts", powered(largest, 3)), soft)
+	key := "chart.points"
+	if drawn < len(c.ts) {
+		key = "chart.points-thinned"
 	}
-	if low == high {
-		high = low + 1
-	}
-	return low, high
+	d.textRight(c.xs.p1, c.vs.p0+6.4, d.t(key, "drawn", itoa(drawn), "shown", itoa(len(c.ts)), "recorded", itoa(len(recorded))), soft)
+	d.text(c.xs.p0, c.vs.p0+6.4, d.t("chart.minutes"), soft)
 }
 
-// thinned keeps each column's first, lowest, highest and last point.
-func thinned(ts, ys []float64) (pt, py []float64) {
-	if len(ts) <= 2*maxColumns {
-		return ts, ys
+// axes draws time and counts, with short marks.
+func (c *traceChart) axes(low, high float64) {
+	d := c.d
+	d.font(regular, sizeChart)
+	x0, y0 := c.xs.p0, c.vs.p0
+	d.line(x0, c.vs.p1, x0, y0, ink, 0.5, whole)
+	d.line(x0, y0, c.xs.p1, y0, ink, 0.5, whole)
+	most := map[bool]int{true: 5, false: 3}[c.large]
+	power := axisPower(high)
+	unit := pow10(power)
+	values, step := steps(low, high, most)
+	for _, v := range values {
+		y := c.vs.at(v)
+		d.line(x0-1, y, x0, y, ink, 0.5, whole)
+		d.textRight(x0-1.5, y+0.85, axisNumber(v/unit, step/unit), ink)
 	}
-	span := ts[len(ts)-1] - ts[0]
-	for i := 0; i < len(ts); {
-		column := int((ts[i] - ts[0]) / span * maxColumns)
-		j, lowest, highest := i, i, i
-		for j < len(ts) && int((ts[j]-ts[0])/span*maxColumns) == column {
-			if ys[j] < ys[lowest] {
-				lowest = j
-			}
-			if ys[j] > ys[highest] {
-				highest = j
-			}
-			j++
-		}
-		keep := []int{i, lowest, highest, j - 1}
-		sort.Ints(keep)
-		for k, at := range keep {
-			if k == 0 || at != keep[k-1] {
-				pt, py = append(pt, ts[at]), append(py, ys[at])
-			}
-		}
-		i = j
+	if power > 0 {
+		d.textRight(x0-0.6, c.vs.p1-0.5, "×10"+superscript(power), ink)
 	}
-	return pt, py
+	values, step = steps(c.span.from, c.span.to, int(max(3, c.w/14)))
+	for _, v := range values {
+		x := c.xs.at(v)
+		d.line(x, y0, x, y0+1, ink, 0.5, whole)
+		d.textCentre(x, y0+3.7, axisNumber(v, step), ink)
+	}
 }
 
-// traceLayer draws in one go what a trace chart shows.
-type traceLayer struct {
-	ts, ys []float64 // all points in range
-	pt, py []float64 // those drawn
-	m      *evidence.Measurement
-}
-
-func (l traceLayer) layer() layer {
-	return func(c draw.Canvas, x, y func(float64) vg.Length) {
-		for _, other := range l.m.Others {
-			l.limits(c, x, y, &other, false)
-		}
-		if p := l.m.Peak; p != nil {
-			l.area(c, x, y, p)
-		}
-		polyline(l.pt, l.py, signal, 0.6)(c, x, y)
-		if p := l.m.Peak; p != nil {
-			l.limits(c, x, y, p, true)
-		}
-		if p := l.m.Automatic; p != nil {
-			l.limits(c, x, y, p, false)
-		}
-		l.window(c, x, y)
+func pow10(n int) float64 {
+	v := 1.0
+	for range n {
+		v *= 10
 	}
+	return v
 }
 
 // base is the height of a peak's baseline at a time.
@@ -155,58 +171,49 @@ func base(p *peak.Peak, t float64) float64 {
 	return p.BaselineStartCounts + f*(p.BaselineEndCounts-p.BaselineStartCounts)
 }
 
-func (l traceLayer) area(c draw.Canvas, x, y func(float64) vg.Length, p *peak.Peak) {
-	xs, ys := []float64{p.StartMin}, []float64{base(p, p.StartMin)}
-	for i, t := range l.ts {
-		if t >= p.StartMin && t <= p.EndMin {
-			xs, ys = append(xs, t), append(ys, l.ys[i])
+// area shades what was integrated: between the points from the peak's start to its end and its baseline.
+func (c *traceChart) area(p *peak.Peak) {
+	d := c.d
+	from, to := max(p.StartMin, c.span.from), min(p.EndMin, c.span.to)
+	if from >= to {
+		return
+	}
+	d.setFill(tint)
+	d.point(c.xs.at(from), c.vs.at(base(p, from)), "m\n")
+	for i, t := range c.ts {
+		if t >= from && t <= to {
+			d.point(c.xs.at(t), c.vs.at(c.ys[i]), "l\n")
 		}
 	}
-	xs, ys = append(xs, p.EndMin), append(ys, base(p, p.EndMin))
-	polygon(xs, ys, tint)(c, x, y)
+	d.point(c.xs.at(to), c.vs.at(base(p, to)), "l h f\n")
 }
 
-// limits draws the baseline, and ticks where the peak begins and ends; those of peaks that are not in use are dashed.
-func (l traceLayer) limits(c draw.Canvas, x, y func(float64) vg.Length, p *peak.Peak, used bool) {
-	from, to := p.StartMin, p.EndMin
-	if from < l.ts[0] || to > l.ts[len(l.ts)-1] {
-		from, to = max(from, l.ts[0]), min(to, l.ts[len(l.ts)-1])
-		if from >= to {
-			return
+// limits draws a baseline, with ticks where the peak begins and ends; those of peaks that are not in use are dashed.
+func (c *traceChart) limits(p *peak.Peak, col color.RGBA, dashedLine bool) {
+	d := c.d
+	from, to := max(p.StartMin, c.span.from), min(p.EndMin, c.span.to)
+	if from >= to {
+		return
+	}
+	pattern := whole
+	if dashedLine {
+		pattern = dash{1.6, 1.4}
+	}
+	d.line(c.xs.at(from), c.vs.at(base(p, from)), c.xs.at(to), c.vs.at(base(p, to)), col, 0.8, pattern)
+	tick := map[bool]float64{true: 1.5, false: 1.1}[c.large]
+	for _, t := range []float64{p.StartMin, p.EndMin} {
+		if c.span.holds(t) {
+			x, y := c.xs.at(t), c.vs.at(base(p, t))
+			d.line(x, y-tick, x, min(y+tick, c.vs.p0+tick), col, 0.8, whole)
 		}
-	}
-	col, dash := accent, []vg.Length(nil)
-	if !used {
-		col, dash = soft, []vg.Length{1.5, 1.5}
-	}
-	polyline([]float64{from, to}, []float64{base(p, from), base(p, to)}, col, 0.7, dash...)(c, x, y)
-	for _, t := range []float64{from, to} {
-		at := vg.Point{X: x(t), Y: y(base(p, t))}
-		path := vg.Path{}
-		path.Move(vg.Point{X: at.X, Y: at.Y - 3})
-		path.Line(vg.Point{X: at.X, Y: at.Y + 3})
-		c.SetColor(col)
-		c.SetLineWidth(0.7)
-		c.SetLineDash(nil, 0)
-		c.Stroke(path)
 	}
 }
 
-// window marks where the peak was sought, by two small hooks at the top.
-func (l traceLayer) window(c draw.Canvas, x, y func(float64) vg.Length) {
-	topY := c.Max.Y
-	c.SetColor(soft)
-	c.SetLineWidth(0.5)
-	c.SetLineDash(nil, 0)
-	for _, e := range []struct{ at, inward float64 }{{l.m.WindowStartMin, 1}, {l.m.WindowEndMin, -1}} {
-		px := x(e.at)
-		if px < c.Min.X || px > c.Max.X {
-			continue
-		}
-		path := vg.Path{}
-		path.Move(vg.Point{X: px, Y: topY - 4})
-		path.Line(vg.Point{X: px, Y: topY})
-		path.Line(vg.Point{X: px + vg.Length(3*e.inward), Y: topY})
-		c.Stroke(path)
+// window grounds the stretch in which the peak was sought.
+func (c *traceChart) window() {
+	from, to := max(c.m.WindowStartMin, c.span.from), min(c.m.WindowEndMin, c.span.to)
+	if from >= to {
+		return
 	}
+	c.d.rect(c.xs.at(from), c.vs.p1, c.xs.at(to)-c.xs.at(from), c.vs.p0-c.vs.p1, shade)
 }

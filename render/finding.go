@@ -1,107 +1,84 @@
 package render
 
 import (
-	"fmt"
-	"io"
 	"strings"
 
 	"assaywrit/decision"
+	"assaywrit/evidence/casefile"
 )
 
-// Finding writes finding.pdf: the case in plain language, on a page or two. It returns the number of pages.
-func Finding(w io.Writer, in Input) (int, error) {
-	words, err := loadWords("en")
-	if err != nil {
-		return 0, err
-	}
-	d := newDocument(in, words, words.get("finding-title"))
-	c := in.Record.Case
+// plainFinding says in plain language what was asked, what was found, how sure that is, what could be wrong and who decides next.
+func (d *document) plainFinding() {
+	c := d.in.Record.Case
 	d.newPage()
-	d.block(words.get("finding-title")+" on the sample "+c.Sample.Code, left, textW, 19, "B", ink)
-	d.line(left, d.y()+0.5, left+28, d.y()+0.5, accent, 0.8)
-	d.down(4)
-	d.pairs([][2]string{
-		{"Case, laboratory", c.Number + ", " + c.Laboratory.Name + " (" + c.Laboratory.Code + ")"},
-		{"For", c.Customer.Name},
-		{"Collected, received", when(c.Sample.CollectedAt) + ", " + when(c.Sample.ReceivedAt)},
-	})
-	d.part(words.get("asked"))
-	d.paragraph(c.Request.Text + testType(c.Request.TestType, c.Request.Activity))
-	d.part(words.get("found"))
-	for k, a := range in.Finding.Analytes {
-		d.plainOutcome(k, a)
+	d.down(1)
+	d.block(d.t("finding.heading", "sample", c.Sample.Code), left, textW, bold, 19, ink)
+	d.line(left, d.y+1, left+28, d.y+1, accent, 2.2, whole)
+	d.down(5)
+	d.facts()
+	d.part("asked")
+	d.paragraph(joined(" ", c.Request.Text, bracketed(joined(", ", c.Request.TestType, c.Request.Activity))))
+	d.part("found")
+	for k := range d.in.Finding.Analytes {
+		d.outcome(k, false)
 	}
-	d.part(words.get("sure"))
+	d.part("sure")
 	d.howSure()
-	d.part(words.get("wrong"))
-	d.bullets(d.whatCouldBeWrong())
-	d.part(words.get("next"))
-	d.paragraph(words.get("next-text"))
-	d.part(words.get("cautions-title"))
-	d.bullets(in.Finding.Cautions)
-	d.part("How to check this finding")
-	d.paragraph(words.get("check-intro-finding"))
-	d.monospaced(d.checkCommands())
-	d.note("Criteria: " + in.Finding.Criteria.ID + ", " + in.Finding.Criteria.Edition + ". SHA-256 of evidence.json: " + in.EvidenceSHA256 + ".")
-	d.block("■  "+words.get("end-finding"), left, textW, sizeSmall, "B", ink)
-	return d.finish(w)
+	d.part("wrong")
+	d.bullets(d.couldBeWrong())
+	d.part("next")
+	d.paragraph(d.t("finding.next"))
+	d.part("cautions")
+	d.bullets(d.in.Finding.Cautions)
+	d.part("check")
+	d.paragraph(d.t("finding.check"))
+	d.commands(d.checkCommands())
+	d.note(d.t("finding.refers", "criteria", d.in.Finding.Criteria.ID, "edition", d.in.Finding.Criteria.Edition, "engine", d.in.Record.Engine.Name+" "+d.in.Record.Engine.Version))
+	d.pairs([]pair{{d.t("label.evidence-sha256"), d.in.EvidenceSHA256}, {d.t("label.finding-sha256"), d.in.FindingSHA256}})
 }
 
-func testType(kind, activity string) string {
-	text := strings.Trim(kind+", "+activity, ", ")
+// facts sets who, what and when in two columns.
+func (d *document) facts() {
+	c := d.in.Record.Case
+	pairs := [][2]pair{
+		{{d.t("label.case"), c.Number}, {d.t("label.collected"), when(c.Sample.CollectedAt)}},
+		{{d.t("label.laboratory"), c.Laboratory.Name + " (" + c.Laboratory.Code + ")"}, {d.t("label.received"), when(c.Sample.ReceivedAt)}},
+		{{d.t("label.customer"), c.Customer.Name}, {d.t("label.acquired"), d.acquired()}},
+		{{d.t("label.codes"), c.Sample.Code + " ↔ " + c.Sample.LaboratoryCode}, {d.t("label.container"), joined(", ", c.Sample.Container, c.Sample.Matrix)}},
+	}
+	const w = textW / 2
+	for _, p := range pairs {
+		high := 1
+		for i, one := range p {
+			x := left + float64(i)*w
+			d.font(regular, sizeSmall)
+			d.fit(x, d.y+3.2, w-4, one.label, soft)
+			lines := d.lines(regular, sizeBody, w-4, one.value)
+			high = max(high, len(lines))
+			d.font(regular, sizeBody)
+			for j, l := range lines {
+				d.text(x, d.y+7.4+float64(j)*lead(sizeBody), l, ink)
+			}
+		}
+		d.down(5.6 + float64(high)*lead(sizeBody))
+	}
+	d.down(1)
+}
+
+func bracketed(text string) string {
 	if text == "" {
 		return ""
 	}
-	return " (" + text + ")"
+	return "(" + text + ")"
 }
 
 // part sets a heading that belongs to what follows.
-func (d *document) part(text string) {
-	d.room(24)
-	d.down(2)
-	d.font("B", sizeH2)
-	d.color(ink)
-	d.down(4)
-	d.put(left, d.y(), text)
-	d.down(2)
-}
-
-func (d *document) plainOutcome(k int, a decision.AnalyteFinding) {
-	need := 20.0
-	if a.Limit != nil {
-		need = 52
-	}
-	d.room(need)
-	y := d.y()
-	d.block(a.Name+": "+a.Label, left+4, textW-4, 10.5, "B", accent)
-	d.block(a.Sentence, left+4, textW-4, sizeBody, "", ink)
-	if a.Limit != nil {
-		d.numberLine(a.Limit)
-	}
-	d.line(left, y+0.5, left, d.y()-1.5, accent, 0.9)
-	d.down(1.5)
-}
-
-// numberLine draws the value with its interval against threshold and decision limit.
-func (d *document) numberLine(l *decision.Limit) {
-	conv := func(v float64) float64 { return inUnit(v, l.DisplayUnit) }
-	high := max(l.Value+l.ExpU, l.DecisionLimit) * 1.12
-	p := newPlot()
-	axes(p, 0, conv(high), 0, 1, 8, 1)
-	p.HideY()
-	p.X.Label.Text = l.DisplayUnit
-	t, dl, v, e := conv(l.Threshold), conv(l.DecisionLimit), conv(l.Value), conv(l.ExpU)
-	p.Add(polyline([]float64{t, t}, []float64{0, 0.7}, ink, 1), label(t, 0.72, "threshold "+number(t, 4), ink, -1, 0, -1))
-	if dl > t {
-		p.Add(polyline([]float64{dl, dl}, []float64{0, 0.7}, accent, 1, 4, 2), label(dl, 0.72, "decision limit "+number(dl, 4), accent, 1, 0, 0))
-	}
-	p.Add(polyline([]float64{v - e, v + e}, []float64{0.3, 0.3}, signal, 1.4), polyline([]float64{v - e, v - e}, []float64{0.2, 0.4}, signal, 1.4),
-		polyline([]float64{v + e, v + e}, []float64{0.2, 0.4}, signal, 1.4), dots([]float64{v}, []float64{0.3}, signal, 3, false))
-	vt, ut := decision.TextWithU(v, e)
-	p.Add(label(v, 0.42, vt+" ± "+ut, signal, 0, 0, -0.5))
-	y := d.y()
-	d.drawPlot(p, left+4, y, textW-8, 24)
-	d.pdf.SetY(y + 26)
+func (d *document) part(key string) {
+	d.room(26)
+	d.down(2.5)
+	d.chapter = ""
+	d.mark(0, d.t("finding."+key+"-title"))
+	d.heading(1, "", d.t("finding."+key+"-title"))
 }
 
 func (d *document) howSure() {
@@ -110,24 +87,26 @@ func (d *document) howSure() {
 		n := 0
 		for _, id := range a.Identifications {
 			ions = max(ions, len(id.Ions))
-			if id.Aliquot != "" {
+			if d.in.Record.Injections[id.InjectionIndex].Role == casefile.SampleAliquot {
 				n++
 			}
 		}
 		aliquots = max(aliquots, n)
 	}
-	d.paragraph(d.words.with("sure-identity", "ions", fmt.Sprint(ions), "aliquots", fmt.Sprint(aliquots)))
+	d.paragraph(d.t("finding.sure-identity", "ions", itoa(ions), "aliquots", itoa(aliquots)))
 	for _, a := range d.in.Finding.Analytes {
 		if a.Limit == nil {
 			continue
 		}
-		_, u := decision.TextWithU(inUnit(a.Limit.Value, a.Limit.DisplayUnit), inUnit(a.Limit.ExpU, a.Limit.DisplayUnit))
-		d.paragraph(a.Name + ": " + d.words.with("sure-value", "u", u+" "+a.Limit.DisplayUnit, "k", fmt.Sprintf("k = %g", a.Limit.K), "p", probability(a.Limit.ProbabilityAbove)))
+		l := shown(a.Limit)
+		_, u := withU(l.value, l.expanded)
+		d.paragraph(d.t("finding.sure-value", "name", a.Name, "u", u+" "+l.unit, "k", plain(a.Limit.K), "rule", a.Limit.KRule, "p", probability(a.Limit.ProbabilityAbove), "method", a.Limit.ProbabilityMethod))
 	}
 }
 
-func (d *document) whatCouldBeWrong() []string {
-	items := []string{d.words.get("wrong-general")}
+// couldBeWrong lists what a reader should weigh: what holds for every case, and what is special about this one.
+func (d *document) couldBeWrong() []string {
+	items := []string{d.t("finding.wrong-general")}
 	clauses := map[string]bool{}
 	for _, a := range d.in.Finding.Analytes {
 		for _, c := range a.Checks {
@@ -135,28 +114,60 @@ func (d *document) whatCouldBeWrong() []string {
 				clauses[c.Clause] = true
 			}
 		}
-	}
-	if len(clauses) > 0 {
-		items = append(items, d.words.with("wrong-memory", "n", fmt.Sprint(len(clauses))))
-	}
-	_, raised := failures(d.in.Finding)
-	var names []string
-	for _, c := range raised {
-		if !contains(names, strings.ToLower(c.Title)) {
-			names = append(names, strings.ToLower(c.Title))
+		if a.Outcome == decision.WithinGuardBand {
+			items = append(items, d.t("finding.wrong-guard", "name", a.Name))
 		}
 	}
-	if len(names) > 0 {
-		items = append(items, d.words.with("wrong-advisory", "list", strings.Join(names, "; ")))
+	if n := len(clauses); n > 0 {
+		items = append(items, d.t("finding.wrong-memory", "n", itoa(n)))
+	}
+	c := d.in.Record.Case
+	if n := len(d.handSets()); n > 0 {
+		items = append(items, d.t("finding.wrong-manual", "n", itoa(n)))
+	}
+	if n := len(c.Deviations); n > 0 {
+		items = append(items, d.t("finding.wrong-deviations", "n", itoa(n)))
+	}
+	if len(c.Sample.Irregularities) > 0 {
+		items = append(items, d.t("finding.wrong-irregular", "list", strings.Join(c.Sample.Irregularities, "; ")))
+	}
+	if raised := d.raised(); len(raised) > 0 {
+		items = append(items, d.t("finding.wrong-advisory", "list", strings.Join(raised, "; ")))
 	}
 	return items
 }
 
-func contains(list []string, s string) bool {
-	for _, x := range list {
-		if x == s {
-			return true
+// raised names the advisory checks that were not met, each title once with the substances that it concerns.
+func (d *document) raised() []string {
+	var order []string
+	names := map[string][]string{}
+	add := func(title, name string) {
+		if names[title] == nil {
+			order = append(order, title)
+			names[title] = []string{}
+		}
+		if name == "" {
+			return
+		}
+		for _, n := range names[title] {
+			if n == name {
+				return
+			}
+		}
+		names[title] = append(names[title], name)
+	}
+	for _, c := range failures(d.in.Finding.Batch, false) {
+		add(c.Title, "")
+	}
+	for _, a := range d.in.Finding.Analytes {
+		for _, c := range failures(a.Checks, false) {
+			add(c.Title, a.Name)
 		}
 	}
-	return false
+	for i, title := range order {
+		if len(names[title]) > 0 {
+			order[i] = title + " (" + strings.Join(names[title], ", ") + ")"
+		}
+	}
+	return order
 }

@@ -261,7 +261,7 @@ func TestOtherCases(t *testing.T) {
 		}, []string{"No finding", "✗ failed"}},
 		{"a manual integration", func(f fstest.MapFS) {
 			replace(t, f, "case.yaml", "deviations: []", "deviations: []\nmanual_integrations:\n  - {injection: \"016\", compound: salbutamol, trace: quantifier, start: 2.20 min, end: 2.38 min, by: P-03, at: \"2026-03-19T10:00:00+01:00\", reason: neighbour, approved_by: P-04}")
-		}, []string{"set by hand", "neighbour", "approved by P-04"}},
+		}, []string{"set by hand", "neighbour", "Approved by P-04"}},
 		{"long and odd text", func(f fstest.MapFS) {
 			replace(t, f, "case.yaml", "deviations: []", "deviations:\n  - {text: \""+long+" 漢字 "+strings.Repeat("x", 300)+"\", approved_by: P-05}")
 		}, []string{"[U+6F22]", "goes on"}},

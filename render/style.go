@@ -1,95 +1,45 @@
 package render
 
-import (
-	"image/color"
-	"strconv"
-	"time"
+import "image/color"
 
-	"assaywrit/decision"
-	"assaywrit/evidence/units"
-)
-
-// Colours. Each is told apart by shape or word as well, and by lightness in grey.
+// Colours. Nothing is told by colour alone: a word, a sign, a line style or a place on the page says it too, and each is of another
+// lightness, so that a copy in grey reads the same.
 var (
 	ink    = color.RGBA{0x1c, 0x24, 0x2e, 0xff}
-	soft   = color.RGBA{0x5a, 0x66, 0x72, 0xff}
-	rule   = color.RGBA{0xb9, 0xc2, 0xcb, 0xff}
-	shade  = color.RGBA{0xee, 0xf1, 0xf4, 0xff}
-	signal = color.RGBA{0x12, 0x4e, 0x82, 0xff} // traces and points
-	tint   = color.RGBA{0xc9, 0xdd, 0xee, 0xff} // area under a peak
-	accent = color.RGBA{0x9a, 0x3d, 0x08, 0xff} // baselines, limits, what needs a look
+	soft   = color.RGBA{0x55, 0x60, 0x6c, 0xff} // what stands in the second row
+	rule   = color.RGBA{0xb4, 0xbd, 0xc7, 0xff} // lines between things
+	shade  = color.RGBA{0xec, 0xef, 0xf2, 0xff} // grounds
+	signal = color.RGBA{0x12, 0x4e, 0x82, 0xff} // what was measured, and places to go to
+	tint   = color.RGBA{0xc9, 0xdd, 0xee, 0xff} // area under a peak or a curve
+	band   = color.RGBA{0xe3, 0xe1, 0xdb, 0xff} // ranges that are accepted, or left open
+	accent = color.RGBA{0x9a, 0x3d, 0x08, 0xff} // limits, baselines, what was not met
+	paper  = color.RGBA{0xff, 0xff, 0xff, 0xff}
 )
 
 // Sizes of type, points.
 const (
+	sizeTitle = 25
+	sizeH1    = 16
+	sizeH2    = 11.5
 	sizeBody  = 9.5
 	sizeTable = 8
 	sizeSmall = 7.5
-	sizeH1    = 15
-	sizeH2    = 11.5
+	sizeChart = 6.8
 )
 
-// Page geometry, millimetres.
+// Page geometry, millimetres: A4 upright throughout, since places that links and bookmarks lead to are counted from one page height.
 const (
 	pageW, pageH = 210.0, 297.0
 	left, right  = 18.0, 18.0
-	top, bottom  = 25.0, 20.0
+	top, bottom  = 26.0, 20.0
 	textW        = pageW - left - right
+	lowest       = pageH - bottom // nothing but the footer stands below
 )
 
-// number writes a value for people. Every number on a page goes through it or through decision.TextWithU.
-func number(v float64, digits int) string { return decision.Text(v, digits) }
+const (
+	pointsPerMM = 72 / 25.4
+	mmPerPoint  = 25.4 / 72
+)
 
-// plain writes a value as it was stated, in its shortest decimal.
-func plain(v float64) string { return strconv.FormatFloat(v, 'f', -1, 64) }
-
-// stated writes a stated fraction in per cent.
-func statedPercent(v float64) string { return decision.Text(float64(v*100), 12) + " %" }
-
-// when writes a time of the record for people: date, time to the minute (or second, where it has one), offset.
-func when(text string) string {
-	t, err := time.Parse(time.RFC3339, text)
-	if err != nil {
-		return text
-	}
-	if t.Second() != 0 {
-		return t.Format("2006-01-02 15:04:05 -07:00")
-	}
-	return t.Format("2006-01-02 15:04 -07:00")
-}
-
-// optional is number, or a dash for what is missing.
-func optional(v *float64, digits int) string {
-	if v == nil {
-		return "–"
-	}
-	return number(*v, digits)
-}
-
-// percentage writes a fraction in per cent.
-func percentage(v *float64, digits int) string {
-	if v == nil {
-		return "–"
-	}
-	return number(*v*100, digits) + " %"
-}
-
-// inUnit converts ng/mL into the unit that people read.
-func inUnit(v float64, unit string) float64 {
-	x, err := units.Concentration.In(v, unit)
-	if err != nil {
-		return v // the case file has checked the unit
-	}
-	return x
-}
-
-// mark shows a result by word and sign.
-func mark(r decision.Result) string {
-	switch r {
-	case decision.Passed:
-		return "✓ passed"
-	case decision.Failed:
-		return "✗ failed"
-	}
-	return "– n/a"
-}
+// lead is the distance of two lines of a size, in millimetres.
+func lead(size float64) float64 { return size * mmPerPoint * 1.32 }

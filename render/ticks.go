@@ -3,7 +3,6 @@ package render
 import (
 	"math"
 	"strconv"
-	"strings"
 
 	"gonum.org/v1/plot"
 )
@@ -12,17 +11,25 @@ import (
 type ticks struct{ most int }
 
 func (t ticks) Ticks(low, high float64) []plot.Tick {
-	span := high - low
-	if !(span > 0) || math.IsInf(span, 0) {
-		return nil
-	}
-	step := niceStep(span / float64(t.most))
-	var list []plot.Tick
-	for k := math.Ceil(low / step); k*step <= high+step*1e-9; k++ {
-		v := k * step
-		list = append(list, plot.Tick{Value: v, Label: axisNumber(v, step)})
+	values, step := steps(low, high, t.most)
+	list := make([]plot.Tick, len(values))
+	for i, v := range values {
+		list[i] = plot.Tick{Value: v, Label: axisNumber(v, step)}
 	}
 	return list
+}
+
+// steps are the values at which marks stand, at most one more than asked for, and their distance.
+func steps(low, high float64, most int) (values []float64, step float64) {
+	span := high - low
+	if !(span > 0) || math.IsInf(span, 0) {
+		return nil, 0
+	}
+	step = niceStep(span / float64(most))
+	for k := math.Ceil(low/step - 1e-9); k*step <= high+step*1e-9; k++ {
+		values = append(values, k*step)
+	}
+	return values, step
 }
 
 // niceStep is the next step of 1, 2 or 5 times a power of ten that is not below raw.
@@ -36,7 +43,7 @@ func niceStep(raw float64) float64 {
 	return 10 * p
 }
 
-// axisNumber writes a tick's value: plain up to five digits, with a power of ten beyond.
+// axisNumber writes the value of a mark, with as many decimals as its step needs: plain up to five digits, with a power of ten beyond.
 func axisNumber(v, step float64) string {
 	if math.Abs(v) < step/1e6 {
 		return "0"
@@ -44,29 +51,7 @@ func axisNumber(v, step float64) string {
 	if a := math.Abs(v); a >= 1e5 || a < 1e-3 {
 		exp := int(math.Floor(math.Log10(a) + 1e-9))
 		m := strconv.FormatFloat(math.Round(v/math.Pow(10, float64(exp))*100)/100, 'f', -1, 64)
-		return m + "×10" + superscript(exp)
+		return typeset(m) + "×10" + superscript(exp)
 	}
-	decimals := max(0, -int(math.Floor(math.Log10(step)+1e-9)))
-	return strconv.FormatFloat(v, 'f', decimals, 64)
-}
-
-func superscript(n int) string {
-	var b strings.Builder
-	for _, r := range strconv.Itoa(n) {
-		if r == '-' {
-			b.WriteRune('⁻')
-		} else {
-			b.WriteRune([]rune("⁰¹²³⁴⁵⁶⁷⁸⁹")[r-'0'])
-		}
-	}
-	return b.String()
-}
-
-// compact writes areas and heights: up to five digits plain, with a power of ten beyond.
-func compact(v float64, digits int) string {
-	if a := math.Abs(v); a >= 1e5 || a > 0 && a < 1e-3 {
-		exp := int(math.Floor(math.Log10(a)))
-		return number(v/math.Pow(10, float64(exp)), digits) + "×10" + superscript(exp)
-	}
-	return number(v, digits)
+	return fixed(v, max(0, -int(math.Floor(math.Log10(step)+1e-9))))
 }

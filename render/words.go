@@ -11,6 +11,9 @@ import (
 type words map[string]string
 
 func loadWords(language string) (words, error) {
+	if language == "" {
+		language = "en"
+	}
 	w, err := templates.Load(language)
 	return words(w), err
 }
@@ -24,14 +27,32 @@ func (w words) get(key string) string {
 	return text
 }
 
-// with returns a text with its places filled: with("key", "name", value, …).
-func (w words) with(key string, pairs ...string) string {
-	text := w.get(key)
-	for i := 0; i+1 < len(pairs); i += 2 {
-		text = strings.ReplaceAll(text, "{"+pairs[i]+"}", pairs[i+1])
+// list returns the parts of a text that bars divide: the heads of a table.
+func (w words) list(key string) []string {
+	parts := strings.Split(w.get(key), "|")
+	for i := range parts {
+		parts[i] = strings.TrimSpace(parts[i])
 	}
-	return text
+	return parts
 }
 
-// paragraphs returns a text in its paragraphs.
-func (w words) paragraphs(key string) []string { return strings.Split(w.get(key), "\n") }
+// or returns the text of a key, or what stands in the record where the language has no word for it.
+func (w words) or(prefix, value string) string {
+	if text, ok := w[prefix+value]; ok {
+		return text
+	}
+	return value
+}
+
+// t returns a text with its places filled: t("key", "name", value, …).
+func (d *document) t(key string, pairs ...string) string {
+	text := d.words.get(key)
+	if len(pairs) == 0 {
+		return text
+	}
+	places := make([]string, len(pairs))
+	for i := 0; i+1 < len(pairs); i += 2 {
+		places[i], places[i+1] = "{"+pairs[i]+"}", pairs[i+1]
+	}
+	return strings.NewReplacer(places...).Replace(text)
+}
