@@ -34,7 +34,7 @@ func (e *SlopeError) Error() string {
 // the standard deviation of a response of weight 1. At least three points at three different amounts are needed.
 //
 // A point that is not finite, or whose amount is not above zero where weights are relative, gives a *PointError; a slope that is
-// not above zero a *SlopeError.
+// not above zero a *SlopeError. Numbers whose squares a float64 does not hold are refused too: what comes back is finite.
 //
 // Source: D. L. Massart et al., Handbook of Chemometrics and Qualimetrics, part A (1997), chapter 8.
 func FitLine(points []Point, w Weighting) (*Fit, error) {
@@ -44,10 +44,9 @@ func FitLine(points []Point, w Weighting) (*Fit, error) {
 		case Unweighted:
 			weights[i] = 1
 		case InverseX, InverseX2:
-			if !(p.X > 0) {
+			if weights[i] = weightAt(p.X, w); !(p.X > 0) || !(weights[i] > 0) || math.IsInf(weights[i], 0) {
 				return nil, &PointError{i, fmt.Sprintf("an amount of %g", p.X), fmt.Sprintf("one above zero, as the weights are %s", w)}
 			}
-			weights[i] = weightAt(p.X, w)
 		default:
 			return nil, fmt.Errorf("weights of kind %q: want none, 1/x or 1/x2", w)
 		}
@@ -105,7 +104,7 @@ func fit(points []Point, weights []float64, w Weighting) (*Fit, error) {
 	f.Sxx = strictmath.Dot(wd, d)
 	s, err := strictmath.WeightedLeastSquares(rows, y, weights)
 	if err != nil {
-		return nil, err
+		return nil, fmt.Errorf("no line through the calibrators: %w", err)
 	}
 	f.B = s.Coef[1]
 	f.A = s.Coef[0] - float64(f.B*f.XBar)
@@ -113,7 +112,30 @@ func fit(points []Point, weights []float64, w Weighting) (*Fit, error) {
 		return nil, &SlopeError{f.B}
 	}
 	f.statistics(s, x, y, weights)
+	if !f.finite() {
+		return nil, fmt.Errorf("no line through the calibrators: %w", strictmath.ErrRange)
+	}
 	return f, nil
+}
+
+func (f *Fit) finite() bool {
+	values := []float64{f.A, f.B, f.SA, f.SB, f.Cov, f.S, f.R, f.R2, f.SumW, f.XBar, f.YBar, f.Sxx, 1 / f.Sxx}
+	for _, p := range f.Points {
+		values = append(values, p.Weight, p.Fitted, p.Residual, p.BackX)
+		if p.RelativeBias != nil {
+			values = append(values, *p.RelativeBias)
+		}
+	}
+	return finite(values...)
+}
+
+func finite(values ...float64) bool {
+	for _, v := range values {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return false
+		}
+	}
+	return true
 }
 
 // statistics fills what follows from the solution in centred form, where a' = A + B·x̄.
@@ -165,10 +187,11 @@ func (f *Fit) WeightAt(x float64) (float64, error) {
 	case Unweighted:
 		return 1, nil
 	case InverseX, InverseX2:
-		if !(x > 0) {
+		w := weightAt(x, f.Weighting)
+		if !(x > 0) || !(w > 0) || math.IsInf(w, 0) {
 			return 0, fmt.Errorf("the amount read from the line is %.6g: it has no weight of kind %s", x, f.Weighting)
 		}
-		return weightAt(x, f.Weighting), nil
+		return w, nil
 	}
 	return 0, fmt.Errorf("weights of kind %q have no rule for other amounts", f.Weighting)
 }
@@ -177,7 +200,8 @@ func (f *Fit) WeightAt(x float64) (float64, error) {
 //
 //	u = (s/b)·√(1/(w·m) + 1/Σw + (y − ȳw)²/(b²·Σw(x − x̄w)²))
 //
-// and, as StdULine, the same without the first term: what the line alone contributes.
+// and, as StdULine, the same without the first term: what the line alone contributes. The weight is on the scale of the fit's: s is
+// the standard deviation of a response of weight 1. It needs m of one or more, a weight above zero and a finite y.
 //
 // Source: Massart et al. (1997), eq. 8.28; unweighted it is ISO 8466-1's form.
 func (f *Fit) Predict(y float64, m int, weight float64) (Prediction, error) {
@@ -186,12 +210,16 @@ func (f *Fit) Predict(y float64, m int, weight float64) (Prediction, error) {
 	}
 	d := (y - f.YBar) / f.B
 	line := 1/f.SumW + float64(d*d)/f.Sxx
-	return Prediction{
+	p := Prediction{
 		X:        (y - f.A) / f.B,
 		StdU:     float64(f.S / f.B * math.Sqrt(1/float64(weight*float64(m))+line)),
 		StdULine: float64(f.S / f.B * math.Sqrt(line)),
 		DoF:      f.DoF, Weight: weight, M: m,
-	}, nil
+	}
+	if !finite(p.X, p.StdU, p.StdULine) {
+		return Prediction{}, fmt.Errorf("a response of %g is too far from the calibrators' %g to be read from the line", y, f.YBar)
+	}
+	return p, nil
 }
 
 // PredictSample is Predict with the weight that the fit's own rule gives at the amount read.
