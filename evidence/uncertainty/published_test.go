@@ -154,16 +154,59 @@ func ExampleCombine() {
 	// Output: u = 0.38 mg/kg, U = 0.75 mg/kg (k = 2)
 }
 
-func BenchmarkCombine(b *testing.B) {
-	parts := make([]Component, 8)
-	for i := range parts {
-		parts[i] = Component{StdU: float64(i + 1), Sensitivity: 1, DoF: dof(float64(10 + i))}
+func ExampleCoverageFactor() {
+	nu := 16.7 // cut to 16
+	k, err := CoverageFactor(0.99, &nu)
+	if err != nil {
+		panic(err)
 	}
-	b.Run("components=8", func(b *testing.B) {
-		for b.Loop() {
-			if _, err := Combine(1, parts); err != nil {
-				b.Fatal(err)
-			}
+	normal, err := CoverageFactor(0.95, nil)
+	if err != nil {
+		panic(err)
+	}
+	fmt.Printf("%.2f %.2f\n", k, normal)
+	// Output: 2.92 1.96
+}
+
+func ExampleProbabilityAbove() {
+	// 1.2 with u = 0.1 against a limit of 1.0: by the normal distribution, and with four effective degrees of freedom.
+	p, err := ProbabilityAbove(1.2, 0.1, 1.0, nil)
+	if err != nil {
+		panic(err)
+	}
+	nu := 4.0
+	q, err := ProbabilityAbove(1.2, 0.1, 1.0, &nu)
+	if err != nil {
+		panic(err)
+	}
+	fmt.Printf("%.4f %.4f\n", p, q)
+	// Output: 0.9772 0.9419
+}
+
+func BenchmarkCombine(b *testing.B) {
+	for _, n := range []int{4, 8, 100} {
+		parts := make([]Component, n)
+		for i := range parts {
+			parts[i] = Component{StdU: float64(i + 1), Sensitivity: 1, DoF: dof(float64(10 + i))}
 		}
-	})
+		b.Run(fmt.Sprintf("components=%d", n), func(b *testing.B) {
+			for b.Loop() {
+				if _, err := Combine(1, parts); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+func BenchmarkCoverageFactor(b *testing.B) {
+	for _, nu := range []float64{4, 16, 1000} {
+		b.Run(fmt.Sprintf("degrees=%g", nu), func(b *testing.B) {
+			for b.Loop() {
+				if _, err := CoverageFactor(0.95, &nu); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
 }
