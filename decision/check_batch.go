@@ -86,7 +86,7 @@ func (b *batchJudge) internalStandard() {
 		}
 		share := r.Relative
 		if share == nil && r.Area != nil && mean != nil {
-			share = ptrTo(*r.Area / *mean)
+			share = new(*r.Area / *mean)
 		}
 		required := r.Role == casefile.SampleAliquot || r.Role == casefile.Control || r.Role == casefile.NegativeControl
 		at := fmt.Sprintf("%s/internal_standard_responses/%d", b.at, i)
@@ -110,7 +110,7 @@ func (b *batchJudge) meanInternalStandard() (mean *float64, of string) {
 	if len(areas) == 0 || !(strictmath.Mean(areas) > 0) {
 		return nil, "controls"
 	}
-	return ptrTo(strictmath.Mean(areas)), "controls"
+	return new(strictmath.Mean(areas)), "controls"
 }
 
 // negativeControl must not show the analyte identified, and must have been able to show it.

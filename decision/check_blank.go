@@ -32,7 +32,7 @@ func (b *batchJudge) blanks() {
 		case x.InternalStandardArea == 0:
 			v = new(float64) // nothing was found: below any share
 		case v == nil && mean != nil:
-			v = ptrTo(x.InternalStandardArea / *mean)
+			v = new(x.InternalStandardArea / *mean)
 		}
 		b.add(b.start("blank-internal-standard/"+x.Injection, "Internal standard in a blank", true, at+"/internal_standard_area_counts_min").byMethod(b.rec, "blanks").
 			atMost(v, b.limits.BlankMaxOfInternalStandard, percent, fmt.Sprintf("Internal standard in the %s %s, of the %s' mean,", x.Role, x.Injection, of)))

@@ -78,7 +78,7 @@ func (b *batchJudge) backCalculated(lowest *float64) {
 	n := float64(len(levels))
 	b.add(b.start("calibrator-levels", "Levels that pass", true, at).byMethod(b.rec, "calibrators").atLeast(&n, float64(b.limits.CalibratorLevels), count, "The number of calibrator levels that pass"))
 	if len(levels) > 0 {
-		b.low, b.high = ptrTo(slices.Min(levels)), ptrTo(slices.Max(levels))
+		b.low, b.high = new(slices.Min(levels)), new(slices.Max(levels))
 	}
 }
 

@@ -55,11 +55,7 @@ func (j *judge) identityChecks(k, i int) []Check {
 		return list
 	}
 	retention, relative := d.retention(), d.relativeRetention()
-	if j.set.Identification.Replacement.Allowed && retention.Result == Failed && relative.Result == Passed {
-		retention.Required, relative.Required = false, true
-		retention.Sentence += " Relative retention takes its place: " + j.set.Identification.Replacement.text() + "."
-	}
-	list = append(list, retention, relative)
+	list = append(list, j.replaced(retention, relative)...)
 	n := float64(len(id.Ions))
 	list = append(list, d.start("transitions", "Number of transitions", d.at+"/ions").cited(j.set.Identification.Transitions.Cite).
 		atLeast(&n, j.set.Identification.Transitions.Value, count, d.subject+": the number of transitions"))
@@ -67,6 +63,22 @@ func (j *judge) identityChecks(k, i int) []Check {
 		list = append(list, d.ion(i)...)
 	}
 	return list
+}
+
+// replaced lets relative retention take the place of a retention that is not met, where the set allows it. As long as relative
+// retention is missing, retention refutes nothing.
+func (j *judge) replaced(retention, relative Check) []Check {
+	rule := j.set.Identification.Replacement
+	if rule.Allowed && retention.Result == Failed {
+		switch {
+		case relative.Result == Passed:
+			retention.Required, relative.Required = false, true
+			retention.Sentence += " Relative retention takes its place: " + rule.text() + "."
+		case relative.Missing:
+			retention.Missing = true
+		}
+	}
+	return []Check{retention, relative}
 }
 
 // subjectOf names an injection of the sample by its aliquot, or by itself where that would not tell it from another.

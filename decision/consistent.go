@@ -80,10 +80,10 @@ func consistentAnalyte(rec *evidence.Record, k int) error {
 		seen.add("blanks", i, b.Injection, b.InjectionIndex, &b.Role)
 	}
 	for i, c := range a.Controls {
-		seen.add("controls", i, c.Injection, c.InjectionIndex, ptrTo(casefile.Control))
+		seen.add("controls", i, c.Injection, c.InjectionIndex, new(casefile.Control))
 	}
 	for i, c := range a.Aliquots {
-		seen.add("aliquots", i, c.Injection, c.InjectionIndex, ptrTo(casefile.SampleAliquot))
+		seen.add("aliquots", i, c.Injection, c.InjectionIndex, new(casefile.SampleAliquot))
 	}
 	if seen.err != nil {
 		return seen.err
@@ -128,6 +128,8 @@ func consistentIons(rec *evidence.Record, a *evidence.Analyte, id *evidence.Iden
 		switch {
 		case m == nil || m.Compound != a.ID || m.Trace != ion.Trace:
 			return fmt.Errorf("%s %s: measurement %d is another one", id.Injection, ion.Trace, ion.MeasurementIndex)
+		case m.Peak == nil && (ion.SignalToNoise != nil || ion.Abundance != nil || ion.ApexOffsetMin != nil || ion.Trace == evidence.QuantifierTrace && id.RetentionMin != nil):
+			return fmt.Errorf("%s %s: figures of a peak that is not there", id.Injection, ion.Trace)
 		case ion.Base && ion.Trace != base:
 			return fmt.Errorf("%s %s: the base ion of the reference is %q", id.Injection, ion.Trace, base)
 		case slices.ContainsFunc(id.Ions[:i], func(o evidence.IonMatch) bool { return o.Trace == ion.Trace }):
@@ -183,5 +185,3 @@ func finite(v reflect.Value, at string) (string, bool) {
 	}
 	return "", true
 }
-
-func ptrTo[T any](v T) *T { return &v }

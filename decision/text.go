@@ -88,6 +88,16 @@ func inUnit(unit string) shower {
 	}
 }
 
+// read is the number that a figure's text shows.
+func read(f *Figure) float64 {
+	text, _, _ := strings.Cut(f.Text, " ")
+	v, err := strconv.ParseFloat(text, 64)
+	if err != nil {
+		panic("decision: internal error: figure " + f.Text)
+	}
+	return v
+}
+
 // apart shows a value beside its limits with as many digits as it takes to tell them apart: a value that lies beyond a limit never
 // reads as the limit.
 func apart(show shower, v float64, limits ...float64) (value *Figure, shown []*Figure) {
@@ -97,7 +107,7 @@ func apart(show shower, v float64, limits ...float64) (value *Figure, shown []*F
 		for _, l := range limits {
 			f := show(l, more)
 			shown = append(shown, f)
-			same = same || l != v && f.Text == value.Text
+			same = same || l != v && read(f) == read(value)
 		}
 		if !same || more > 17 {
 			return value, shown
