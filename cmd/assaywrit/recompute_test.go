@@ -36,7 +36,10 @@ type plainRecord struct {
 			IS          string `json:"internal_standard"`
 			Calibration *struct{ Weighting string }
 			Uncertainty *struct {
-				Components []struct{ Relative, Absolute *float64 }
+				Components []struct {
+					Relative, Absolute *float64
+					DoF                *float64 `json:"degrees_of_freedom"`
+				}
 			}
 		}
 	}
@@ -46,7 +49,8 @@ type plainRecord struct {
 			NG     float64 `json:"ng_per_ml"`
 			SD     float64 `json:"sd_ng_per_ml"`
 			Budget struct {
-				StdU float64 `json:"combined_std_u"`
+				StdU         float64 `json:"combined_std_u"`
+				EffectiveDoF float64 `json:"effective_degrees_of_freedom"`
 			}
 		}
 	}
@@ -66,7 +70,8 @@ func (r *plainRecord) area(i int, compound, trace string) float64 {
 //   - the weighted line by a general-purpose statistics library (gonum stat.LinearRegression),
 //   - the uncertainty of the line by the published closed form (Massart et al. 1997, eq. 8.28, without the term of the
 //     sample's own scatter): u = (s/b)·√(1/Σw + (x−x̄w)²/Σw(x−x̄w)²),
-//   - the combination by the GUM's root of squares (JCGM 100:2008, 5.1.2),
+//   - the combination by the GUM's root of squares (JCGM 100:2008, 5.1.2) and its degrees of freedom by Welch and Satterthwaite (G.4.1),
+//   - the probability above the threshold by gonum's Student distribution,
 //   - the decision limit as threshold + 1.645·u_max, rounded up to two significant figures (the rule of the edition that the
 //     criteria set names; the published limit for salbutamol is 1200 ng/mL).
 func TestRecomputedByHand(t *testing.T) {
@@ -81,7 +86,7 @@ func TestRecomputedByHand(t *testing.T) {
 			continue
 		}
 		checked++
-		value, u := byHand(t, &rec, analyte.ID)
+		value, u, nu := byHand(t, &rec, analyte.ID)
 		near(t, analyte.ID+" quantity", analyte.Result.NG, value, 1e-11)
 		near(t, analyte.ID+" combined standard uncertainty", analyte.Result.Budget.StdU, u, 1e-9)
 
@@ -92,18 +97,19 @@ func TestRecomputedByHand(t *testing.T) {
 		raw := limit.Threshold + 1.645**limit.MaxStdU
 		unit := math.Pow(10, math.Floor(math.Log10(raw))-1)
 		near(t, analyte.ID+" decision limit", limit.DecisionLimit, math.Ceil(raw/unit)*unit, 1e-12)
-		normal := distuv.Normal{Mu: value, Sigma: u}
-		near(t, analyte.ID+" probability above the threshold", limit.ProbabilityAbove, normal.Survival(limit.Threshold), 1e-9)
+		student := distuv.StudentsT{Mu: value, Sigma: u, Nu: nu}
+		near(t, analyte.ID+" probability above the threshold", limit.ProbabilityAbove, student.Survival(limit.Threshold), 1e-9)
+		near(t, analyte.ID+" effective degrees of freedom", analyte.Result.Budget.EffectiveDoF, nu, 1e-9)
 	}
 	if checked == 0 {
 		t.Fatal("no quantity was checked")
 	}
 }
 
-func byHand(t *testing.T, rec *plainRecord, analyte string) (value, u float64) {
+func byHand(t *testing.T, rec *plainRecord, analyte string) (value, u, nu float64) {
 	t.Helper()
 	var is, weighting string
-	var relative []float64
+	var relative, freedom []float64
 	for _, m := range rec.Method.Analytes {
 		if m.ID == analyte {
 			is, weighting = m.IS, m.Calibration.Weighting
@@ -112,6 +118,10 @@ func byHand(t *testing.T, rec *plainRecord, analyte string) (value, u float64) {
 					t.Fatal("this check knows relative components only")
 				}
 				relative = append(relative, *c.Relative)
+				freedom = append(freedom, math.Inf(1))
+				if c.DoF != nil {
+					freedom[len(freedom)-1] = *c.DoF
+				}
 			}
 		}
 	}
@@ -149,11 +159,14 @@ func byHand(t *testing.T, rec *plainRecord, analyte string) (value, u float64) {
 	mean, sd := stat.MeanStdDev(values, nil)
 	s := math.Sqrt(ss / float64(len(x)-2))
 	line := s / beta * math.Sqrt(1/sumW+math.Pow(mean/dilution[0]-meanX, 2)/sxx) * dilution[0]
-	variance := line*line + sd*sd/float64(len(values))
-	for _, c := range relative {
+	repeat := sd * sd / float64(len(values))
+	variance := line*line + repeat
+	fourths := math.Pow(line, 4)/float64(len(x)-2) + repeat*repeat/float64(len(values)-1)
+	for i, c := range relative {
 		variance += c * c * mean * mean
+		fourths += math.Pow(c*mean, 4) / freedom[i]
 	}
-	return mean, math.Sqrt(variance)
+	return mean, math.Sqrt(variance), variance * variance / fourths
 }
 
 func near(t *testing.T, what string, got, want, relative float64) {
