@@ -182,6 +182,10 @@ func TestLessInformationIsNeverFirmer(t *testing.T) {
 			if firm[after.Analytes[i].Outcome] > firm[before.Analytes[i].Outcome] {
 				t.Errorf("without %s: %s became %s", name, after.Analytes[i].Analyte, after.Analytes[i].Outcome)
 			}
+			// That an analyte is not there is a claim as well: what is missing refutes nothing.
+			if after.Analytes[i].Outcome == NotIdentified && before.Analytes[i].Outcome != NotIdentified {
+				t.Errorf("without %s: %s became %s", name, after.Analytes[i].Analyte, after.Analytes[i].Outcome)
+			}
 		}
 		if must != "" && after.Analytes[k].Outcome != must {
 			t.Errorf("without %s: %s is %s, want %s", name, after.Analytes[k].Analyte, after.Analytes[k].Outcome, must)
@@ -213,6 +217,20 @@ func TestLessInformationIsNeverFirmer(t *testing.T) {
 				x.Ions[1].SignalToNoise = nil
 			})
 		}
+	}
+	for k := range whole.Analytes[:2] {
+		without("signal-to-noise of a qualifier in every injection", NotDetermined, k, func(r *evidence.Record) {
+			for i := range r.Analytes[k].Identifications {
+				r.Analytes[k].Identifications[i].Ions[1].SignalToNoise = nil
+			}
+		})
+		without("signal-to-noise of a qualifier in the sample", NotDetermined, k, func(r *evidence.Record) {
+			for i := range r.Analytes[k].Identifications {
+				if x := &r.Analytes[k].Identifications[i]; x.Aliquot != "" {
+					x.Ions[1].SignalToNoise = nil
+				}
+			}
+		})
 	}
 	without("calibration", NotDetermined, 0, func(r *evidence.Record) { r.Analytes[0].Calibration = nil })
 	without("result", NotDetermined, 0, func(r *evidence.Record) { r.Analytes[0].Result = nil })
