@@ -263,8 +263,8 @@ func TestOutputIsNotOverwritten(t *testing.T) {
 	}
 }
 
-// TestUnwritableOutput builds into a folder that cannot be written: a path below a file stands in for a read-only disk,
-// and /dev/full for one without space.
+// TestUnwritableOutput builds into a folder that cannot be written: a path below a file stands in for a read-only disk, whose
+// permissions would not keep the administrator out.
 func TestUnwritableOutput(t *testing.T) {
 	dir := filepath.Join(demoFolder(t), "case")
 	file := filepath.Join(t.TempDir(), "file")

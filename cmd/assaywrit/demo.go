@@ -34,7 +34,7 @@ func demoCommand(s streams) *cobra.Command {
 		Short:   "Take a worked example through the whole job",
 		Long:    demoHelp,
 		Example: "  assaywrit demo\n  assaywrit demo /tmp/example",
-		Args:    cobra.MaximumNArgs(1),
+		Args:    atMost(1, "one folder"),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			folder := defaultDemoFolder
 			if len(args) == 1 {

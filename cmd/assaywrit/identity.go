@@ -27,7 +27,7 @@ func identityCommand(s streams) *cobra.Command {
 		Short:   "Make a root and signatories' certificates for trials",
 		Long:    identityHelp,
 		Example: "  assaywrit identity root keys --laboratory LAB-07\n  assaywrit identity signatory keys --person P-04 --position \"certifying scientist\"",
-		Args:    cobra.NoArgs,
+		Args:    atMost(0, "root or signatory"),
 		RunE:    func(cmd *cobra.Command, args []string) error { return cmd.Help() },
 	}
 	cmd.AddCommand(identityRoot(s), identitySignatory(s))
@@ -43,6 +43,9 @@ func identityRoot(s streams) *cobra.Command {
 		Example: "  assaywrit identity root keys --laboratory LAB-07",
 		Args:    exactly(1, "the folder to write to"),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if err := need(cmd, "laboratory"); err != nil {
+				return err
+			}
 			pass, err := newPassphrase(s, passphrase)
 			if err != nil {
 				return err
@@ -58,7 +61,6 @@ func identityRoot(s streams) *cobra.Command {
 	cmd.Flags().StringVar(&laboratory, "laboratory", "", "code or name of the laboratory")
 	cmd.Flags().StringVar(&passphrase, "passphrase-file", "", "file whose first line is the passphrase (default: ask)")
 	cmd.Flags().IntVar(&years, "years", 10, "how long the certificate is valid")
-	_ = cmd.MarkFlagRequired("laboratory")
 	return cmd
 }
 
@@ -71,6 +73,9 @@ func identitySignatory(s streams) *cobra.Command {
 		Example: "  assaywrit identity signatory keys --person P-04 --position \"certifying scientist\"",
 		Args:    exactly(1, "the folder that holds root.pem and root.key"),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if err := need(cmd, "person", "position"); err != nil {
+				return err
+			}
 			root, err := readIdentity(s, args[0], "root", rootPassphrase)
 			if err != nil {
 				return err
@@ -93,8 +98,6 @@ func identitySignatory(s streams) *cobra.Command {
 	f.StringVar(&passphrase, "passphrase-file", "", "file whose first line is the person's passphrase (default: ask)")
 	f.StringVar(&rootPassphrase, "root-passphrase-file", "", "file whose first line is the root's passphrase (default: ask)")
 	f.IntVar(&years, "years", 3, "how long the certificate is valid")
-	_ = cmd.MarkFlagRequired("person")
-	_ = cmd.MarkFlagRequired("position")
 	return cmd
 }
 

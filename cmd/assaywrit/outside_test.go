@@ -131,3 +131,32 @@ func TestSameBytesOnAnotherProcessor(t *testing.T) {
 		t.Errorf("only %d files were compared", compared)
 	}
 }
+
+// TestNoSpaceLeft lets the program build where a file may not grow beyond 150 kB (the shell's limit on file sizes), as on a disk
+// that is full: it fails, and leaves nothing behind.
+func TestNoSpaceLeft(t *testing.T) {
+	shell := program(t, "bash")
+	self, err := os.Executable()
+	if err != nil {
+		t.Fatal(err)
+	}
+	dir := t.TempDir()
+	folder, err := filepath.Abs(filepath.Join(demoFolder(t), "case"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	// This test's own binary runs as assaywrit under that name: see TestMain.
+	command := filepath.Join(t.TempDir(), "assaywrit")
+	if err := os.Symlink(self, command); err != nil {
+		t.Skipf("no symbolic links here: this check was not made (%v)", err)
+	}
+	cmd := exec.Command(shell, "-c", `ulimit -f 150; exec "$0" build "$1" -o out.zip`, command, folder)
+	cmd.Dir = dir
+	out, err := cmd.CombinedOutput()
+	if cmd.ProcessState == nil || cmd.ProcessState.ExitCode() != exitFailed {
+		t.Errorf("%v, want exit status %d\n%s", err, exitFailed, out)
+	}
+	if left := tree(t, dir); left != "." {
+		t.Errorf("left behind: %s\n%s", left, out)
+	}
+}

@@ -2,6 +2,7 @@ package main
 
 import (
 	"errors"
+	"fmt"
 	"io"
 
 	"github.com/spf13/cobra"
@@ -79,6 +80,30 @@ func suggestion(cmd *cobra.Command, word string) string {
 		return "; did you mean " + near[0] + "?"
 	}
 	return ""
+}
+
+// atMost refuses more than n arguments.
+func atMost(n int, names string) cobra.PositionalArgs {
+	return func(cmd *cobra.Command, args []string) error {
+		if len(args) > n {
+			return &failure{exitUsage, fmt.Errorf("%s takes %s, got %q too", cmd.Name(), names, args[n]), "see " + cmd.CommandPath() + " -h"}
+		}
+		return nil
+	}
+}
+
+// need refuses a command line that lacks a flag.
+func need(cmd *cobra.Command, names ...string) error {
+	var missing []string
+	for _, name := range names {
+		if f := cmd.Flags().Lookup(name); f == nil || f.Value.String() == "" {
+			missing = append(missing, "--"+name)
+		}
+	}
+	if len(missing) == 0 {
+		return nil
+	}
+	return &failure{exitUsage, fmt.Errorf("%s needs %s", cmd.Name(), listed(missing)), "see " + cmd.CommandPath() + " -h"}
 }
 
 // exactly asks for n arguments, and says which.

@@ -18,7 +18,7 @@ func schemaCommand(s streams) *cobra.Command {
 		Long:      "schema prints the JSON Schema (draft 2020-12) of one kind of file, so that editors complete and check it.\nWithout a name it lists the kinds: " + listed(names) + ".",
 		Example:   "  assaywrit schema case > case.schema.json",
 		ValidArgs: names,
-		Args:      cobra.MaximumNArgs(1),
+		Args:      atMost(1, "one name"),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				fmt.Fprintln(s.out, strings.Join(names, "\n"))
@@ -48,7 +48,7 @@ func criteriaCommand(s streams) *cobra.Command {
 		Long:      "criteria prints a built-in criteria set, as a start for a laboratory's own: put it in the case folder and name its path in\ncase.yaml. Without a name it lists the sets. Each value tells whether it was read in its source or comes from memory.",
 		Example:   "  assaywrit criteria antidoping-urine-2022 > mycase/criteria.yaml",
 		ValidArgs: decision.BuiltInNames(),
-		Args:      cobra.MaximumNArgs(1),
+		Args:      atMost(1, "one name"),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if len(args) == 0 {
 				fmt.Fprintln(s.out, strings.Join(decision.BuiltInNames(), "\n"))

@@ -67,6 +67,9 @@ func startsWith(path, magic string) (bool, error) {
 		return false, err
 	}
 	defer f.Close()
+	if info, err := f.Stat(); err == nil && info.IsDir() {
+		return false, &failure{exitUsage, fmt.Errorf("%s: is a folder, want a bundle or a raw file", path), "a case folder is looked through with: assaywrit check " + path}
+	}
 	head := make([]byte, len(magic))
 	n, err := io.ReadFull(f, head)
 	if err != nil && err != io.EOF && err != io.ErrUnexpectedEOF {

@@ -38,6 +38,9 @@ func signCommand(s streams) *cobra.Command {
 		Example: "  assaywrit sign case-0417.zip --person P-04 --meaning authorised --certificate P-04.pem --key P-04.key",
 		Args:    exactly(1, "the bundle"),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if err := need(cmd, "person", "meaning", "certificate", "key"); err != nil {
+				return err
+			}
 			return sign(s, args[0], o)
 		},
 	}
@@ -49,9 +52,6 @@ func signCommand(s streams) *cobra.Command {
 	f.StringArrayVar(&o.chain, "chain", nil, "certificates between the person's and the root (PEM); may be repeated")
 	f.StringVar(&o.passphrase, "passphrase-file", "", "file whose first line is the key's passphrase (default: ask)")
 	f.StringVarP(&o.output, "output", "o", "", "file to write (default: the bundle itself, replaced as a whole)")
-	for _, name := range []string{"person", "meaning", "certificate", "key"} {
-		_ = cmd.MarkFlagRequired(name)
-	}
 	return cmd
 }
 

@@ -104,10 +104,7 @@ func Erf(x float64) float64 {
 				temp = x + float64(efx*x)
 			}
 		} else {
-			z := float64(x * x)
-			r := pp0 + float64(z*(pp1+float64(z*(pp2+float64(z*(pp3+float64(z*pp4)))))))
-			s := 1 + float64(z*(qq1+float64(z*(qq2+float64(z*(qq3+float64(z*(qq4+float64(z*qq5)))))))))
-			y := r / s
+			y := erfInner(x)
 			temp = x + float64(x*y)
 		}
 		if sign {
@@ -116,13 +113,11 @@ func Erf(x float64) float64 {
 		return temp
 	}
 	if x < 1.25 { // 0.84375 <= |x| < 1.25
-		s := x - 1
-		P := pa0 + float64(s*(pa1+float64(s*(pa2+float64(s*(pa3+float64(s*(pa4+float64(s*(pa5+float64(s*pa6)))))))))))
-		Q := 1 + float64(s*(qa1+float64(s*(qa2+float64(s*(qa3+float64(s*(qa4+float64(s*(qa5+float64(s*qa6)))))))))))
+		pq := erfMiddle(x)
 		if sign {
-			return -erx - P/Q
+			return -erx - pq
 		}
-		return erx + P/Q
+		return erx + pq
 	}
 	if x >= 6 { // inf > |x| >= 6
 		if sign {
@@ -130,17 +125,9 @@ func Erf(x float64) float64 {
 		}
 		return 1
 	}
-	s := 1 / (x * x)
-	var R, S float64
-	if x < 1/0.35 { // |x| < 1 / 0.35  ~ 2.857143
-		R = ra0 + float64(s*(ra1+float64(s*(ra2+float64(s*(ra3+float64(s*(ra4+float64(s*(ra5+float64(s*(ra6+float64(s*ra7)))))))))))))
-		S = 1 + float64(s*(sa1+float64(s*(sa2+float64(s*(sa3+float64(s*(sa4+float64(s*(sa5+float64(s*(sa6+float64(s*(sa7+float64(s*sa8)))))))))))))))
-	} else { // |x| >= 1 / 0.35  ~ 2.857143
-		R = rb0 + float64(s*(rb1+float64(s*(rb2+float64(s*(rb3+float64(s*(rb4+float64(s*(rb5+float64(s*rb6)))))))))))
-		S = 1 + float64(s*(sb1+float64(s*(sb2+float64(s*(sb3+float64(s*(sb4+float64(s*(sb5+float64(s*(sb6+float64(s*sb7)))))))))))))
-	}
+	rs := erfcRational(x)
 	z := math.Float64frombits(math.Float64bits(x) & 0xffffffff00000000) // pseudo-single (20-bit) precision x
-	r := float64(Exp(float64(-z*z)-0.5625) * Exp(float64((z-x)*(z+x))+R/S))
+	r := float64(Exp(float64(-z*z)-0.5625) * Exp(float64((z-x)*(z+x))+rs))
 	if sign {
 		return r/x - 1
 	}
@@ -171,10 +158,7 @@ func Erfc(x float64) float64 {
 		if x < Tiny { // |x| < 2**-56
 			temp = x
 		} else {
-			z := float64(x * x)
-			r := pp0 + float64(z*(pp1+float64(z*(pp2+float64(z*(pp3+float64(z*pp4)))))))
-			s := 1 + float64(z*(qq1+float64(z*(qq2+float64(z*(qq3+float64(z*(qq4+float64(z*qq5)))))))))
-			y := r / s
+			y := erfInner(x)
 			if x < 0.25 { // |x| < 1/4
 				temp = x + float64(x*y)
 			} else {
@@ -187,30 +171,20 @@ func Erfc(x float64) float64 {
 		return 1 - temp
 	}
 	if x < 1.25 { // 0.84375 <= |x| < 1.25
-		s := x - 1
-		P := pa0 + float64(s*(pa1+float64(s*(pa2+float64(s*(pa3+float64(s*(pa4+float64(s*(pa5+float64(s*pa6)))))))))))
-		Q := 1 + float64(s*(qa1+float64(s*(qa2+float64(s*(qa3+float64(s*(qa4+float64(s*(qa5+float64(s*qa6)))))))))))
+		pq := erfMiddle(x)
 		if sign {
-			return 1 + erx + P/Q
+			return 1 + erx + pq
 		}
-		return 1 - erx - P/Q
+		return 1 - erx - pq
 
 	}
 	if x < 28 { // |x| < 28
-		s := 1 / (x * x)
-		var R, S float64
-		if x < 1/0.35 { // |x| < 1 / 0.35 ~ 2.857143
-			R = ra0 + float64(s*(ra1+float64(s*(ra2+float64(s*(ra3+float64(s*(ra4+float64(s*(ra5+float64(s*(ra6+float64(s*ra7)))))))))))))
-			S = 1 + float64(s*(sa1+float64(s*(sa2+float64(s*(sa3+float64(s*(sa4+float64(s*(sa5+float64(s*(sa6+float64(s*(sa7+float64(s*sa8)))))))))))))))
-		} else { // |x| >= 1 / 0.35 ~ 2.857143
-			if sign && x > 6 {
-				return 2 // x < -6
-			}
-			R = rb0 + float64(s*(rb1+float64(s*(rb2+float64(s*(rb3+float64(s*(rb4+float64(s*(rb5+float64(s*rb6)))))))))))
-			S = 1 + float64(s*(sb1+float64(s*(sb2+float64(s*(sb3+float64(s*(sb4+float64(s*(sb5+float64(s*(sb6+float64(s*sb7)))))))))))))
+		if sign && x > 6 {
+			return 2 // x < -6
 		}
+		rs := erfcRational(x)
 		z := math.Float64frombits(math.Float64bits(x) & 0xffffffff00000000) // pseudo-single (20-bit) precision x
-		r := float64(Exp(float64(-z*z)-0.5625) * Exp(float64((z-x)*(z+x))+R/S))
+		r := float64(Exp(float64(-z*z)-0.5625) * Exp(float64((z-x)*(z+x))+rs))
 		if sign {
 			return 2 - r/x
 		}
@@ -220,4 +194,25 @@ func Erfc(x float64) float64 {
 		return 2
 	}
 	return 0
+}
+
+// erfInner is erf(x)/x − 1 for |x| < 0.84375.
+func erfInner(x float64) float64 {
+	z := float64(x * x)
+	return horner(z, pp0, pp1, pp2, pp3, pp4) / horner(z, 1, qq1, qq2, qq3, qq4, qq5)
+}
+
+// erfMiddle is erf(x) − erx for 0.84375 ≤ x < 1.25.
+func erfMiddle(x float64) float64 {
+	s := x - 1
+	return horner(s, pa0, pa1, pa2, pa3, pa4, pa5, pa6) / horner(s, 1, qa1, qa2, qa3, qa4, qa5, qa6)
+}
+
+// erfcRational is log(x·exp(x²)·erfc(x)) + 0.5625 for 1.25 ≤ x < 28.
+func erfcRational(x float64) float64 {
+	s := 1 / (x * x)
+	if x < 1/0.35 { // about 2.857
+		return horner(s, ra0, ra1, ra2, ra3, ra4, ra5, ra6, ra7) / horner(s, 1, sa1, sa2, sa3, sa4, sa5, sa6, sa7, sa8)
+	}
+	return horner(s, rb0, rb1, rb2, rb3, rb4, rb5, rb6) / horner(s, 1, sb1, sb2, sb3, sb4, sb5, sb6, sb7)
 }

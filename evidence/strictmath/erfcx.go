@@ -16,7 +16,7 @@ func Erfcx(x float64) float64 {
 	case x < 1.25:
 		return float64(expSquare(x) * Erfc(x))
 	case x < 28:
-		return float64(Exp(erfcExponent(x)) / x)
+		return float64(Exp(erfcRational(x)-0.5625) / x)
 	}
 	const invSqrtPi = 0.56418958354775628695
 	s := 1 / (x * x)
@@ -32,20 +32,6 @@ func expSquare(x float64) float64 {
 		return e
 	}
 	return e + float64(e*l)
-}
-
-// erfcExponent is log(x·exp(x²)·erfc(x)) for 1.25 ≤ x < 28: the coefficients of Erfc.
-func erfcExponent(x float64) float64 {
-	s := 1 / (x * x)
-	var r, q float64
-	if x < 1/0.35 {
-		r = horner(s, ra0, ra1, ra2, ra3, ra4, ra5, ra6, ra7)
-		q = horner(s, 1, sa1, sa2, sa3, sa4, sa5, sa6, sa7, sa8)
-	} else {
-		r = horner(s, rb0, rb1, rb2, rb3, rb4, rb5, rb6)
-		q = horner(s, 1, sb1, sb2, sb3, sb4, sb5, sb6, sb7)
-	}
-	return r/q - 0.5625
 }
 
 // horner is c[0] + c[1]·s + c[2]·s² + …
