@@ -30,8 +30,9 @@ type Chromatogram struct {
 	ID         string // as in the file, unique in it
 	Kind       Kind
 	Transition Transition
+	Unit       string // of the intensity, as the file states it ("mAU"), or empty
 	TimeMin    []float64
-	Intensity  []float64 // detector counts, as acquired
+	Intensity  []float64 // as acquired: detector counts, or the unit that the file states
 }
 
 // Kind of a chromatogram.
@@ -51,16 +52,37 @@ type Warning struct {
 	Detail string `json:"detail"`
 }
 
-// A File is what one raw file holds.
+// A File is what one raw file holds. What the file does not state is empty.
 type File struct {
-	Format        string // "mzML" or "delimited text"
+	Format        string // "mzML", "ANDI chromatography", "JCAMP-DX", "delimited text", …
 	FormatVersion string // as the file states it
-	StartTime     string // acquisition start as the file states it (RFC 3339, without offset where the file gives none), or empty
-	Instrument    string // model and serial number as the file states them, or empty
-	Software      string // acquisition software and version as the file states them, or empty
-	SampleCode    string // sample name as the file states it, or empty
+	StartTime     string // acquisition start as the file states it (RFC 3339, without offset where the file gives none)
+	Instrument    string // model and serial number as the file states them
+	Software      string // acquisition software and version as the file states them
+	Method        string // acquisition method or scan settings, as the file names them
+	SampleCode    string // sample name as the file states it
 	Chromatograms []Chromatogram
+	Scans         Scans        // spectra over time; nil where the file has none
+	StoredPeaks   []StoredPeak // the file's own peak table
 	Warnings      []Warning
+}
+
+// A StoredPeak is a row of the peak table that a file brings along, made by the instrument's software. It is what the instrument
+// said: nothing is computed from it. Absent values are nil. Times are in minutes, areas in the trace's unit times minutes.
+type StoredPeak struct {
+	TraceID          string   `json:"trace_id"`
+	Name             string   `json:"name,omitempty"`
+	RetentionMin     float64  `json:"retention_min"`
+	StartMin         *float64 `json:"start_min,omitempty"`
+	EndMin           *float64 `json:"end_min,omitempty"`
+	Area             *float64 `json:"area_counts_min,omitempty"`
+	Height           *float64 `json:"height_counts,omitempty"`
+	BaselineStartMin *float64 `json:"baseline_start_min,omitempty"`
+	BaselineEndMin   *float64 `json:"baseline_end_min,omitempty"`
+	BaselineStart    *float64 `json:"baseline_start_counts,omitempty"`
+	BaselineEnd      *float64 `json:"baseline_end_counts,omitempty"`
+	ByHand           bool     `json:"integrated_by_hand,omitempty"` // as the file says
+	DetectionCodes   string   `json:"detection_codes,omitempty"`    // how the software drew the limits, in its own letters
 }
 
 // A SyntaxError says where a file is wrong, what was found and what would be accepted. Line and Column count from 1;
