@@ -31,3 +31,13 @@ func ReadAll(src Source) ([]byte, error) {
 	}
 	return nil, err
 }
+
+// Budget is how many bytes of numbers a reader may hold for a source: twelve for each byte of the file as it is stored, and 40 MiB.
+// A file that claims more is a bomb, or compressed far beyond what measurements allow.
+func Budget(src Source) int64 {
+	stored := src.Size()
+	if s, ok := src.(interface{ Stored() int64 }); ok {
+		stored = s.Stored()
+	}
+	return 12*stored + 40<<20
+}

@@ -12,10 +12,18 @@ const (
 	accZlib  = "MS:1000574"
 	accPlain = "MS:1000576"
 
-	accTime      = "MS:1000595"
-	accIntensity = "MS:1000515"
-	unitSecond   = "UO:0000010"
-	unitMinute   = "UO:0000031"
+	accTime       = "MS:1000595"
+	accIntensity  = "MS:1000515"
+	accMZ         = "MS:1000514"
+	accWavelength = "MS:1000617"
+	unitSecond    = "UO:0000010"
+	unitMinute    = "UO:0000031"
+
+	accLevel     = "MS:1000511"
+	accCentroid  = "MS:1000127"
+	accProfile   = "MS:1000128"
+	accScanStart = "MS:1000016"
+	accTotalIon  = "MS:1000285"
 
 	accTarget   = "MS:1000827" // isolation window target m/z
 	accSelected = "MS:1000744" // selected ion m/z
@@ -27,8 +35,20 @@ const (
 	accTool   = "MS:1000799" // custom unreleased software tool: states one by its value only
 )
 
-// numberBytes is the size of each kind of number that is read.
-var numberBytes = map[string]int{accFloat64: 8, accInt64: 8, accFloat32: 4, accInt32: 4}
+// numbers are the kinds of number that are read.
+var numbers = map[string]number{accFloat64: float64Number, accInt64: int64Number, accFloat32: float32Number, accInt32: int32Number}
+
+// contents are the arrays that are read.
+var contents = map[string]content{accTime: timeContent, accIntensity: intensityContent, accMZ: mzContent, accWavelength: wavelengthContent}
+
+// presses are the compressions of MS-Numpress, alone and with zlib.
+var presses = map[string]struct {
+	press press
+	zlib  bool
+}{
+	"MS:1002312": {linear, false}, "MS:1002313": {positiveInteger, false}, "MS:1002314": {shortLoggedFloat, false},
+	"MS:1002746": {linear, true}, "MS:1002747": {positiveInteger, true}, "MS:1002748": {shortLoggedFloat, true},
+}
 
 // unreadNumbers are kinds of numbers known by accession and not read.
 var unreadNumbers = map[string]string{"MS:1000520": "16-bit floats", "MS:1001479": "strings"}
@@ -50,12 +70,6 @@ var kindsByAccession = map[string]trace.Kind{
 
 // unreadCompressions are known by accession and not read.
 var unreadCompressions = map[string]string{
-	"MS:1002312": "MS-Numpress linear prediction",
-	"MS:1002313": "MS-Numpress positive integer",
-	"MS:1002314": "MS-Numpress short logged float",
-	"MS:1002746": "MS-Numpress linear prediction with zlib",
-	"MS:1002747": "MS-Numpress positive integer with zlib",
-	"MS:1002748": "MS-Numpress short logged float with zlib",
 	"MS:1003780": "zstd",
 	"MS:1003781": "byte-shuffled zstd",
 	"MS:1003782": "dictionary-encoded zstd",
@@ -69,3 +83,6 @@ var auxiliaryArrays = map[string]string{"MS:1000820": "flow rate", "MS:1000821":
 
 // relativeUnits are intensities that were scaled trace by trace: abundances can no longer be compared between traces.
 var relativeUnits = map[string]string{"MS:1000132": "percent of base peak", "MS:1000905": "percent of base peak times 100"}
+
+// intensityUnits are units other than counts, as people write them.
+var intensityUnits = map[string]string{"UO:0000269": "AU", "MS:1000814": "counts/s", "UO:0000218": "V", "UO:0000247": "mV"}

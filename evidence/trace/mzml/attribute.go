@@ -38,7 +38,7 @@ func (s *scanner) declaration() error {
 	case "iso-8859-1", "latin1":
 		s.latin1 = true
 	default:
-		return s.fail(from, fmt.Sprintf("text in the encoding %q", name), "UTF-8 or ISO-8859-1", "")
+		return s.fail(s.base+from, fmt.Sprintf("text in the encoding %q", name), "UTF-8 or ISO-8859-1", "")
 	}
 	return nil
 }
@@ -49,29 +49,29 @@ func (s *scanner) attribute(element string) error {
 	key, ok := s.word()
 	s.spaces()
 	if !ok || s.at >= len(s.data) || s.data[s.at] != '=' {
-		return s.fail(from, fmt.Sprintf("%q in the tag %q", s.data[from:min(from+20, len(s.data))], element), "an attribute with a value", cutHint)
+		return s.fail(s.base+from, fmt.Sprintf("%q in the tag %q", s.data[from:min(from+20, len(s.data))], element), "an attribute with a value", cutHint)
 	}
 	s.at++
 	s.spaces()
 	if s.at >= len(s.data) || s.data[s.at] != '"' && s.data[s.at] != '\'' {
-		return s.fail(from, fmt.Sprintf("the attribute %q without quotes", key), "a quoted value", cutHint)
+		return s.fail(s.base+from, fmt.Sprintf("the attribute %q without quotes", key), "a quoted value", cutHint)
 	}
 	i := bytes.IndexByte(s.data[s.at+1:], s.data[s.at])
 	if i < 0 {
-		return s.fail(from, fmt.Sprintf("the attribute %q, which is cut", key), "its closing quote", cutHint)
+		return s.fail(s.base+from, fmt.Sprintf("the attribute %q, which is cut", key), "its closing quote", cutHint)
 	}
 	raw := s.data[s.at+1 : s.at+1+i]
 	s.at += i + 2
 	if len(s.attrs) >= maxAttributes {
-		return s.fail(from, fmt.Sprintf("a tag %q with more than %d attributes", element, maxAttributes), "fewer", "")
+		return s.fail(s.base+from, fmt.Sprintf("a tag %q with more than %d attributes", element, maxAttributes), "fewer", "")
 	}
 	for _, a := range s.attrs {
 		if a.name == key {
-			return s.fail(from, fmt.Sprintf("the attribute %q a second time in %q", key, element), "each once", "")
+			return s.fail(s.base+from, fmt.Sprintf("the attribute %q a second time in %q", key, element), "each once", "")
 		}
 	}
 	if got, want := s.wrongValue(raw); want != "" {
-		return s.fail(from, fmt.Sprintf("%s in the attribute %q", got, key), want, cutHint)
+		return s.fail(s.base+from, fmt.Sprintf("%s in the attribute %q", got, key), want, cutHint)
 	}
 	s.attrs = append(s.attrs, attribute{key, raw})
 	return nil
@@ -150,21 +150,33 @@ func (s *scanner) attr(name string) string {
 	return ""
 }
 
+// raw returns an attribute of the start tag read last as the file writes it, or nil.
+func (s *scanner) raw(name string) []byte {
+	for _, a := range s.attrs {
+		if a.name == name {
+			return a.raw
+		}
+	}
+	return nil
+}
+
 // value decodes the checked value of an attribute. Line ends and tabs in it are spaces (XML 1.0, section 3.3.3).
 func (s *scanner) value(raw []byte) string {
-	text := string(raw)
-	if strings.ContainsAny(text, "\t\n\r") {
-		text = strings.NewReplacer("\r\n", " ", "\r", " ", "\n", " ", "\t", " ").Replace(text)
+	plain := true
+	for _, c := range raw {
+		plain = plain && c >= ' ' && c < 0x80 && c != '&'
 	}
-	if s.latin1 && strings.IndexFunc(text, func(r rune) bool { return r >= 0x80 }) >= 0 {
+	if plain {
+		return s.intern(raw)
+	}
+	text := strings.NewReplacer("\r\n", " ", "\r", " ", "\n", " ", "\t", " ").Replace(string(raw))
+	if s.latin1 {
 		wide := make([]rune, len(text))
 		for i := range len(text) {
 			wide[i] = rune(text[i])
 		}
 		text = string(wide)
 	}
-	if strings.IndexByte(text, '&') >= 0 {
-		text, _ = unescape(text)
-	}
+	text, _ = unescape(text)
 	return text
 }

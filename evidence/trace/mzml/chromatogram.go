@@ -7,9 +7,6 @@ import (
 	"assaywrit/evidence/trace"
 )
 
-// maxPoints is the most that one file may hold in all its arrays: 512 MiB of memory.
-const maxPoints = 1 << 26
-
 // A chromatogram gathers one chromatogram element.
 type chromatogram struct {
 	c               trace.Chromatogram
@@ -38,6 +35,7 @@ func (r *reader) startChromatogram(at int) error {
 		return s.fail(at, fmt.Sprintf("the chromatogram id %q", id), "an id that no other chromatogram has", "")
 	}
 	r.ids[id], r.order = true, append(r.order, id)
+	r.index.begins(at, false, id)
 	r.chrom = &chromatogram{c: trace.Chromatogram{ID: id, Kind: trace.Other}, start: at, length: n}
 	return nil
 }
@@ -72,10 +70,6 @@ func (c *chromatogram) ion(s *scanner, t term, of string, at int) error {
 	if t.accession != accTarget && t.accession != accSelected {
 		return nil
 	}
-	mz, ok := trace.Decimal(t.value)
-	if !ok || mz < 0 || mz > 1e6 {
-		return s.fail(at, fmt.Sprintf("m/z %q in the chromatogram %q", t.value, c.c.ID), "a decimal number from 0 (not stated) to 1000000", "")
-	}
 	slot := &c.selected
 	switch {
 	case t.accession == accSelected:
@@ -84,20 +78,30 @@ func (c *chromatogram) ion(s *scanner, t term, of string, at int) error {
 	default:
 		slot = &c.c.Transition.PrecursorMZ
 	}
+	return setMZ(s, slot, t.value, of, fmt.Sprintf("the chromatogram %q", c.c.ID), at)
+}
+
+// setMZ takes an m/z that is stated of a precursor or product, once; 0 means that it is not stated.
+func setMZ(s *scanner, slot *float64, text, of, where string, at int) error {
+	mz, ok := trace.Decimal(text)
+	if !ok || mz < 0 || mz > 1e6 {
+		return s.fail(at, fmt.Sprintf("m/z %q in %s", text, where), "a decimal number from 0 (not stated) to 1000000", "")
+	}
 	if *slot != 0 && *slot != mz {
-		return s.fail(at, fmt.Sprintf("the m/z %g and %g for one %s of the chromatogram %q", *slot, mz, of, c.c.ID), "one", "")
+		return s.fail(at, fmt.Sprintf("the m/z %g and %g for one %s of %s", *slot, mz, of, where), "one", "")
 	}
 	*slot = mz
 	return nil
 }
 
 // take decodes an array of the open chromatogram; those that are neither times nor intensities are left alone.
-func (r *reader) take(b *binaryArray) error {
+func (r *reader) take(b *described) error {
 	c := r.chrom
 	slot := &c.intensity
-	switch b.content {
-	case accIntensity:
-	case accTime:
+	switch contents[b.content] {
+	case intensityContent:
+		c.c.Unit = b.unitOf()
+	case timeContent:
 		slot = &c.time
 	default:
 		if name, known := auxiliaryArrays[b.content]; known {
@@ -108,7 +112,14 @@ func (r *reader) take(b *binaryArray) error {
 	if *slot != nil {
 		return r.s.fail(b.at, fmt.Sprintf("a second array of one kind in the chromatogram %q", c.c.ID), "one time and one intensity array", "")
 	}
-	v, err := b.decode(r, c.length)
+	a, err := b.array(r.s, c.length)
+	if err != nil {
+		return err
+	}
+	if r.left -= 8 * int64(a.n); r.left < 0 {
+		return r.s.fail(b.at, "chromatograms that take far more memory than the file", fmt.Sprintf("at most %d bytes of numbers", trace.Budget(r.s.src)), "export the file again without compression of its arrays")
+	}
+	v, err := r.decode.decode(&a, b.held, nil)
 	if err != nil {
 		return err
 	}

@@ -51,8 +51,8 @@ func param(accession, rest string) string {
 	return fmt.Sprintf(`<cvParam cvRef="MS" accession="%s" name=""%s/>`, accession, rest)
 }
 
-// array is a binaryDataArray of 64-bit numbers; terms is what else is said about it.
-func array(compression, text, content, unit string) string {
+// arrayOf is a binaryDataArray of 64-bit numbers; terms is what else is said about it.
+func arrayOf(compression, text, content, unit string) string {
 	return fmt.Sprintf("          <binaryDataArray encodedLength=\"%d\">\n            %s\n            %s\n            %s\n            <binary>%s</binary>\n          </binaryDataArray>\n",
 		len(text), param(accFloat64, ""), param(compression, ""), param(content, unit), text)
 }
@@ -85,11 +85,11 @@ func fileOf(chromatograms ...string) string {
 
 // times and intensities as arrays in zlib.
 func timeArray(t testing.TB, v []float64) string {
-	return array(accZlib, packed(t, floats(v)), accTime, minutes)
+	return arrayOf(accZlib, packed(t, floats(v)), accTime, minutes)
 }
 
 func intensityArray(t testing.TB, v []float64) string {
-	return array(accZlib, packed(t, floats(v)), accIntensity, counts)
+	return arrayOf(accZlib, packed(t, floats(v)), accIntensity, counts)
 }
 
 // whole is a file with nothing wrong in it.

@@ -32,6 +32,8 @@ func FuzzRead(f *testing.F) {
 		f.Fatalf("only %d seed files", seeds)
 	}
 	f.Add([]byte(whole(f)))
+	f.Add([]byte(wholeScans(f)))
+	f.Add([]byte(pressedFile(f, linearTimes())))
 	f.Fuzz(func(t *testing.T, data []byte) {
 		file, err := Read("fuzz.mzML", bytes.NewReader(data))
 		if err != nil {
@@ -49,8 +51,12 @@ func FuzzRead(f *testing.F) {
 			ids[c.ID] = true
 			points += len(c.TimeMin)
 		}
-		if points > len(data)*maxGrowth {
+		if int64(16*points) > 2*trace.Budget(bytes.NewReader(data)) {
 			t.Fatalf("%d points from %d bytes", points, len(data))
+		}
+		var syntax *trace.SyntaxError
+		if err := readEverything("fuzz.mzML", data); err != nil && !errors.As(err, &syntax) {
+			t.Fatal(err)
 		}
 	})
 }

@@ -12,6 +12,7 @@ type header struct {
 	samples     []sample
 	instruments []instrument
 	tools       once
+	settings    once // ids of scanSettings
 	toolVersion string
 
 	ids                      map[string]bool // of samples and instruments
@@ -45,6 +46,9 @@ func (h *header) start(s *scanner, name string, at int) error {
 	switch name {
 	case "software":
 		h.toolVersion = s.attr("version")
+		return nil
+	case "scanSettings":
+		h.settings.add(s.attr("id"))
 		return nil
 	case "run":
 		h.startTime, h.runSample, h.runInstrument = s.attr("startTimeStamp"), s.attr("sampleRef"), s.attr("defaultInstrumentConfigurationRef")
@@ -87,6 +91,7 @@ func (h *header) term(t term, holder string) {
 func (h *header) fill(f *trace.File) {
 	f.StartTime = h.startTime
 	f.Software = h.tools.String()
+	f.Method = h.settings.String()
 	for _, x := range h.samples {
 		if x.id != h.runSample && (h.runSample != "" || len(h.samples) > 1) {
 			continue

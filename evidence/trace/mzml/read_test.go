@@ -56,7 +56,7 @@ func TestKindsOfNumbers(t *testing.T) {
 			if compression == accZlib {
 				text = packed(t, raw)
 			}
-			a := replaced(t, array(compression, text, accIntensity, counts), accFloat64, tt.accession)
+			a := replaced(t, arrayOf(compression, text, accIntensity, counts), accFloat64, tt.accession)
 			f := read(t, fileOf(chromatogramOf("x", len(tt.values), timeArray(t, times(len(tt.values))), a)))
 			if got := f.Chromatograms[0].Intensity; fmt.Sprint(got) != fmt.Sprint(tt.values) {
 				t.Errorf("%s %s: got %v, want %v", tt.accession, compression, got, tt.values)
@@ -158,7 +158,7 @@ func TestBase64InLines(t *testing.T) {
 
 func TestEmptyChromatogram(t *testing.T) {
 	empty := `      <chromatogram id="empty" defaultArrayLength="0"></chromatogram>` + "\n"
-	zero := chromatogramOf("zero", 0, array(accPlain, "", accTime, minutes), array(accZlib, packed(t, nil), accIntensity, counts))
+	zero := chromatogramOf("zero", 0, arrayOf(accPlain, "", accTime, minutes), arrayOf(accZlib, packed(t, nil), accIntensity, counts))
 	f := read(t, fileOf(empty, zero))
 	if len(f.Chromatograms) != 2 || len(f.Chromatograms[0].TimeMin)+len(f.Chromatograms[1].TimeMin) != 0 {
 		t.Errorf("got %v", f.Chromatograms)

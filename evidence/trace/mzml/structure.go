@@ -19,11 +19,15 @@ var parents = map[string][]string{
 	"software":                    {"softwareList"},
 	"instrumentConfigurationList": {"mzML"},
 	"instrumentConfiguration":     {"instrumentConfigurationList"},
+	"scanSettingsList":            {"mzML"},
+	"scanSettings":                {"scanSettingsList"},
 	"run":                         {"mzML"},
 	"spectrumList":                {"run"},
 	"spectrum":                    {"spectrumList"},
 	"chromatogramList":            {"run"},
 	"chromatogram":                {"chromatogramList"},
+	"scanList":                    {"spectrum"},
+	"scan":                        {"scanList"},
 	"precursorList":               {"spectrum"},
 	"precursor":                   {"precursorList", "chromatogram"},
 	"productList":                 {"spectrum"},
@@ -44,6 +48,7 @@ var parents = map[string][]string{
 // single are the elements of which their parent has at most one.
 var single = map[string]bool{
 	"mzML": true, "run": true, "chromatogramList": true, "spectrumList": true, "binaryDataArrayList": true, "binary": true, "isolationWindow": true,
+	"scanList": true, "precursorList": true, "productList": true,
 	"indexList": true, "indexListOffset": true, "fileChecksum": true,
 }
 

@@ -57,6 +57,11 @@ func (r *reader) param(t term, at int) error {
 		return r.binary.term(r.s, t, at)
 	case holder == "chromatogram":
 		return r.chrom.term(r.s, t, at)
+	case r.spec != nil:
+		if holder == "selectedIon" {
+			outer = r.above(3)
+		}
+		return r.spec.term(r.s, t, holder, outer, at)
 	case r.chrom != nil && (holder == "isolationWindow" || holder == "selectedIon"):
 		if holder == "selectedIon" {
 			outer = r.above(3)
