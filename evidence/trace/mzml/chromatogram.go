@@ -78,17 +78,17 @@ func (c *chromatogram) ion(s *scanner, t term, of string, at int) error {
 	default:
 		slot = &c.c.Transition.PrecursorMZ
 	}
-	return setMZ(s, slot, t.value, of, fmt.Sprintf("the chromatogram %q", c.c.ID), at)
+	return setMZ(s, slot, t.value, of, func() string { return fmt.Sprintf("the chromatogram %q", c.c.ID) }, at)
 }
 
 // setMZ takes an m/z that is stated of a precursor or product, once; 0 means that it is not stated.
-func setMZ(s *scanner, slot *float64, text, of, where string, at int) error {
+func setMZ(s *scanner, slot *float64, text, of string, where func() string, at int) error {
 	mz, ok := trace.Decimal(text)
 	if !ok || mz < 0 || mz > 1e6 {
-		return s.fail(at, fmt.Sprintf("m/z %q in %s", text, where), "a decimal number from 0 (not stated) to 1000000", "")
+		return s.fail(at, fmt.Sprintf("m/z %q in %s", text, where()), "a decimal number from 0 (not stated) to 1000000", "")
 	}
 	if *slot != 0 && *slot != mz {
-		return s.fail(at, fmt.Sprintf("the m/z %g and %g for one %s of %s", *slot, mz, of, where), "one", "")
+		return s.fail(at, fmt.Sprintf("the m/z %g and %g for one %s of %s", *slot, mz, of, where()), "one", "")
 	}
 	*slot = mz
 	return nil

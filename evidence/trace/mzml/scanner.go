@@ -26,6 +26,7 @@ type scanner struct {
 	latin1 bool // ISO-8859-1 instead of UTF-8
 	done   bool // the root has ended
 
+	recent    [256]string       // some of them, found without a search
 	tentative bool              // inside a tag that is read again, with a larger window, where it fails
 	emptied   bool              // the tag read last was an empty element: its end comes next
 	names     map[string]string // short texts that come again and again, each once
@@ -408,6 +409,18 @@ func (s *scanner) word() (string, bool) {
 
 // intern gives the same string for the same bytes, so that a large file needs few.
 func (s *scanner) intern(raw []byte) string {
+	if len(raw) == 0 {
+		return ""
+	}
+	slot := &s.recent[(int(raw[0])*7+int(raw[len(raw)-1])*31+len(raw)*5)%len(s.recent)]
+	if *slot == string(raw) { // no memory is taken to compare
+		return *slot
+	}
+	*slot = s.known(raw)
+	return *slot
+}
+
+func (s *scanner) known(raw []byte) string {
 	if text, seen := s.names[string(raw)]; seen {
 		return text
 	}

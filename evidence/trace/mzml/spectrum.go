@@ -63,33 +63,33 @@ func (r *reader) startSpectrum(at int) error {
 
 // term applies a term of a spectrum, its scan, or an ion of its precursor.
 func (x *spectrum) term(s *scanner, t term, holder, outer string, at int) error {
-	where := fmt.Sprintf("the spectrum %q", x.scan.ID)
+	where := func() string { return fmt.Sprintf("the spectrum %q", x.scan.ID) }
 	switch t.accession {
 	case accNegative, accPositive:
 		p := map[string]trace.Polarity{accNegative: trace.Negative, accPositive: trace.Positive}[t.accession]
 		if x.scan.Polarity != "" && x.scan.Polarity != p {
-			return s.fail(at, fmt.Sprintf("the polarities %s and %s in %s", x.scan.Polarity, p, where), "one", "")
+			return s.fail(at, fmt.Sprintf("the polarities %s and %s in %s", x.scan.Polarity, p, where()), "one", "")
 		}
 		x.scan.Polarity = p
 	case accCentroid, accProfile:
 		m := map[string]trace.Mode{accCentroid: trace.Centroid, accProfile: trace.Profile}[t.accession]
 		if x.scan.Mode != "" && x.scan.Mode != m {
-			return s.fail(at, fmt.Sprintf("both centroid and profile in %s", where), "one", "")
+			return s.fail(at, fmt.Sprintf("both centroid and profile in %s", where()), "one", "")
 		}
 		x.scan.Mode = m
 	case accLevel:
 		n, err := strconv.Atoi(t.value)
 		if err != nil || n < 1 || n > 100 {
-			return s.fail(at, fmt.Sprintf("the MS level %q in %s", t.value, where), "a number from 1", "")
+			return s.fail(at, fmt.Sprintf("the MS level %q in %s", t.value, where()), "a number from 1", "")
 		}
 		if x.scan.MSLevel != 0 && x.scan.MSLevel != n {
-			return s.fail(at, fmt.Sprintf("the MS levels %d and %d in %s", x.scan.MSLevel, n, where), "one", "")
+			return s.fail(at, fmt.Sprintf("the MS levels %d and %d in %s", x.scan.MSLevel, n, where()), "one", "")
 		}
 		x.scan.MSLevel = n
 	case accTotalIon:
 		v, ok := trace.Decimal(t.value)
 		if !ok {
-			return s.fail(at, fmt.Sprintf("the total ion current %q in %s", t.value, where), "a decimal number", "")
+			return s.fail(at, fmt.Sprintf("the total ion current %q in %s", t.value, where()), "a decimal number", "")
 		}
 		x.scan.TotalIon = v
 	case accScanStart:
@@ -113,18 +113,18 @@ func (x *spectrum) term(s *scanner, t term, holder, outer string, at int) error 
 }
 
 // startTime takes the start of the first scan; a spectrum that is merged from several begins with it.
-func (x *spectrum) startTime(s *scanner, t term, where string, at int) error {
+func (x *spectrum) startTime(s *scanner, t term, where func() string, at int) error {
 	if x.timed {
 		return nil
 	}
 	v, ok := trace.Decimal(t.value)
 	switch {
 	case !ok:
-		return s.fail(at, fmt.Sprintf("the scan start time %q in %s", t.value, where), "a decimal number", "")
+		return s.fail(at, fmt.Sprintf("the scan start time %q in %s", t.value, where()), "a decimal number", "")
 	case t.unit == unitSecond:
 		v /= 60
 	case t.unit != unitMinute:
-		return s.fail(at, fmt.Sprintf("a scan start time in the unit %q in %s", t.unit, where), "seconds ("+unitSecond+") or minutes ("+unitMinute+")", "a unit of time is not guessed: export the file again with a converter that states it")
+		return s.fail(at, fmt.Sprintf("a scan start time in the unit %q in %s", t.unit, where()), "seconds ("+unitSecond+") or minutes ("+unitMinute+")", "a unit of time is not guessed: export the file again with a converter that states it")
 	}
 	x.timed, x.scan.TimeMin = true, v
 	return nil
