@@ -6,8 +6,6 @@
 package evidence
 
 import (
-	"crypto/sha256"
-	"encoding/hex"
 	"errors"
 	"io/fs"
 
@@ -51,10 +49,16 @@ func Evaluate(fsys fs.FS, folder *casefile.Folder, engine Engine) (*Evaluation, 
 	if err := ev.readInjections(fsys); err != nil {
 		return nil, err
 	}
+	rec.CrossChecks = crossChecks(rec, ev)
 	for _, a := range folder.Method.Analytes {
-		if requested(folder.Case.Request.Analytes, a.ID) {
-			rec.Analytes = append(rec.Analytes, assay(rec, a))
+		if !requested(folder.Case.Request.Analytes, a.ID) {
+			continue
 		}
+		out := assay(rec, a)
+		if out.ReferenceSpectrum, err = referenceSpectrum(fsys, &a); err != nil {
+			return nil, err
+		}
+		rec.Analytes = append(rec.Analytes, out)
 	}
 	return ev, nil
 }
@@ -63,22 +67,32 @@ func Evaluate(fsys fs.FS, folder *casefile.Folder, engine Engine) (*Evaluation, 
 func (e *Evaluation) readInjections(fsys fs.FS) error {
 	var problems []error
 	for _, row := range e.Record.Sequence {
-		file, err := readRaw(fsys, row.File, e.Record.Method.Tables)
-		if err != nil {
+		if err := e.readInjection(fsys, row); err != nil {
 			problems = append(problems, err)
-			continue
-		}
-		inj, used, err := measureInjection(row, file, e.Record)
-		if err != nil {
-			problems = append(problems, err)
-			continue
-		}
-		e.Record.Injections = append(e.Record.Injections, inj)
-		for _, c := range used {
-			e.traces[traceKey{row.File, c.ID}] = c
 		}
 	}
 	return errors.Join(problems...)
+}
+
+func (e *Evaluation) readInjection(fsys fs.FS, row casefile.Injection) error {
+	src, done, err := open(fsys, row.File)
+	if err != nil {
+		return err
+	}
+	defer done()
+	file, err := readRaw(row.File, src, e.Record.Method.Tables)
+	if err != nil {
+		return err
+	}
+	inj, used, err := measureInjection(row, file, e.Record)
+	if err != nil {
+		return err
+	}
+	e.Record.Injections = append(e.Record.Injections, inj)
+	for _, c := range used {
+		e.traces[traceKey{row.File, c.ID}] = c
+	}
+	return nil
 }
 
 func hashInputs(fsys fs.FS, folder *casefile.Folder) ([]InputFile, error) {
@@ -88,12 +102,11 @@ func hashInputs(fsys fs.FS, folder *casefile.Folder) ([]InputFile, error) {
 	}
 	inputs := make([]InputFile, 0, len(paths))
 	for _, p := range paths {
-		data, err := fs.ReadFile(fsys, p)
+		n, sum, err := hashFile(fsys, p)
 		if err != nil {
 			return nil, err
 		}
-		sum := sha256.Sum256(data)
-		inputs = append(inputs, InputFile{Path: p, Bytes: int64(len(data)), SHA256: hex.EncodeToString(sum[:])})
+		inputs = append(inputs, InputFile{Path: p, Bytes: n, SHA256: sum})
 	}
 	return inputs, nil
 }
@@ -110,6 +123,8 @@ func requested(ids []string, id string) bool {
 // steps lists the algorithms behind the recorded values. A published version never changes its results.
 func steps() []Step {
 	return []Step{
+		{"ion trace from spectra", ionAlgorithm},
+		{"spectrum of a peak", apexAlgorithm + ", " + averageAlgorithm},
 		{"noise", peak.NoiseAlgorithm},
 		{"peak limits", peak.DetectionAlgorithm},
 		{"area", peak.AreaAlgorithm},

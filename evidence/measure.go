@@ -3,6 +3,7 @@ package evidence
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"assaywrit/evidence/casefile"
 	"assaywrit/evidence/peak"
@@ -27,12 +28,15 @@ func measureInjection(row casefile.Injection, file *trace.File, rec *Record) (In
 	inj := Injection{
 		ID: row.ID, File: row.File, Role: row.Role, Level: row.Level, Aliquot: row.Aliquot, Dilution: row.Dilution,
 		Format: formatName(file), StartTime: file.StartTime, Instrument: file.Instrument, Software: file.Software,
-		SampleCode: file.SampleCode, Warnings: file.Warnings,
+		FileMethod: file.Method, SampleCode: file.SampleCode, Warnings: file.Warnings, StoredPeaks: file.StoredPeaks,
 	}
 	if row.Role == casefile.Excluded {
 		return inj, nil, nil
 	}
-	m := measurer{row: row, file: file, rec: rec}
+	m := measurer{row: row, file: file, rec: rec, inj: &inj}
+	if m.ions, m.err = extractAll(row.File, file, &rec.Method); m.err != nil {
+		return inj, nil, m.err
+	}
 	for _, is := range rec.Method.InternalStandards {
 		m.measure(is.ID, InternalStandardTrace, is.Transition, is.ExpectedRetentionMin, is.RetentionWindowMin, is.ExpectedRetentionMin)
 	}
@@ -40,6 +44,7 @@ func measureInjection(row casefile.Injection, file *trace.File, rec *Record) (In
 		target := a.ExpectedRetentionMin
 		if p := m.measure(a.ID, QuantifierTrace, a.Quantifier, target, a.RetentionWindowMin, target); p != nil {
 			target = p.ApexMin // the qualifiers belong to the quantifier's peak
+			m.spectrum(&a, p)
 		}
 		for i, q := range a.Qualifiers {
 			m.measure(a.ID, QualifierTrace(i), q, a.ExpectedRetentionMin, a.RetentionWindowMin, target)
@@ -61,6 +66,8 @@ type measurer struct {
 	row  casefile.Injection
 	file *trace.File
 	rec  *Record
+	inj  *Injection
+	ions map[string]trace.Chromatogram // taken from spectra, by id
 	done []Measurement
 	used []trace.Chromatogram
 	err  error
@@ -72,7 +79,7 @@ func (m *measurer) measure(compound, which string, t casefile.Transition, expect
 		return nil
 	}
 	what := compound + " " + which
-	c, err := findTrace(m.row.File, m.file, t, m.rec.Method.Identification.TransitionTolMZ, expected, what)
+	c, how, err := m.trace(t, expected, what)
 	if err != nil {
 		m.err = err
 		return nil
@@ -84,7 +91,7 @@ func (m *measurer) measure(compound, which string, t casefile.Transition, expect
 		return nil
 	}
 	mt := Measurement{
-		Compound: compound, Trace: which, TraceID: c.ID, Transition: c.Transition, Points: len(c.TimeMin),
+		Compound: compound, Trace: which, TraceID: c.ID, Transition: c.Transition, Extraction: how, Unit: c.Unit, Points: len(c.TimeMin),
 		FirstMin: c.TimeMin[0], LastMin: c.TimeMin[len(c.TimeMin)-1], Parameters: p,
 		WindowStartMin: expected - window, WindowEndMin: expected + window, Choice: choiceAlgorithm, Noise: found.Noise,
 	}
@@ -93,9 +100,32 @@ func (m *measurer) measure(compound, which string, t casefile.Transition, expect
 		m.err = err
 		return nil
 	}
+	mt.Stored = storedMatch(m.inj.StoredPeaks, &mt)
+	mt.Warnings = traceWarnings(c, &mt)
 	m.done = append(m.done, mt)
 	m.used = append(m.used, c)
 	return mt.Peak
+}
+
+// trace finds the chromatogram of a transition, recorded or taken from spectra.
+func (m *measurer) trace(t casefile.Transition, expected float64, what string) (trace.Chromatogram, *Extraction, error) {
+	tol := m.rec.Method.Identification.TransitionTolMZ
+	if t.Ion == nil {
+		c, err := findTrace(m.row.File, m.file, t, tol, expected, what)
+		return c, nil, err
+	}
+	x := ionTraceOf(t, tol)
+	return m.ions[x.id()], &x.rule, nil
+}
+
+// spectrum takes the spectrum of the quantifier's peak just measured, where the method asks for it: in the sample's injections and in
+// those that serve as the reference.
+func (m *measurer) spectrum(a *casefile.Analyte, p *peak.Peak) {
+	if a.Spectrum == nil || m.err != nil || m.row.Role != casefile.SampleAliquot && !slices.Contains(m.rec.Method.Identification.ReferenceRoles, m.row.Role) {
+		return
+	}
+	last := &m.done[len(m.done)-1]
+	last.Spectrum, m.err = peakSpectrum(m.row.File, m.file, a.Spectrum, a.Quantifier, p, m.rec.Method.Identification.TransitionTolMZ)
 }
 
 // choose returns the peak whose apex is nearest to target among those with their apex in the window, both ends included,

@@ -1,9 +1,7 @@
 package evidence
 
 import (
-	"bytes"
 	"fmt"
-	"io/fs"
 	"math"
 	"path"
 	"strings"
@@ -14,13 +12,9 @@ import (
 	"assaywrit/evidence/trace/table"
 )
 
-// readRaw reads one raw file of the case folder, whatever its format.
-func readRaw(fsys fs.FS, name string, tables []casefile.TableLayout) (*trace.File, error) {
-	data, err := fs.ReadFile(fsys, name)
-	if err != nil {
-		return nil, err
-	}
-	return formats.Read(name, bytes.NewReader(data), func(name string) (table.Layout, bool) {
+// readRaw reads one raw file of the case folder, whatever its format, from src, which its scans go on to use.
+func readRaw(name string, src trace.Source, tables []casefile.TableLayout) (*trace.File, error) {
+	return formats.Read(name, src, func(name string) (table.Layout, bool) {
 		for _, t := range tables {
 			if ok, err := path.Match(t.Files, name); err == nil && ok {
 				return tableLayout(t), true
@@ -88,6 +82,9 @@ func describe(t casefile.Transition, tolMZ float64) string {
 // held lists a file's traces, the first few of them.
 func held(file *trace.File) string {
 	if len(file.Chromatograms) == 0 {
+		if file.Scans != nil {
+			return fmt.Sprintf("%d spectra and no chromatogram", file.Scans.Len())
+		}
 		return "no chromatogram at all"
 	}
 	const most = 6

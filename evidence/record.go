@@ -23,8 +23,9 @@ type Record struct {
 	Method   casefile.Method      `json:"method"`
 	Sequence []casefile.Injection `json:"sequence"`
 
-	Injections []Injection `json:"injections"` // in acquisition order, one for each row of the sequence
-	Analytes   []Analyte   `json:"analytes"`   // those requested, in the method's order
+	Injections  []Injection  `json:"injections"`             // in acquisition order, one for each row of the sequence
+	CrossChecks []CrossCheck `json:"cross_checks,omitempty"` // what does not agree between raw files, or between them and the sequence
+	Analytes    []Analyte    `json:"analytes"`               // those requested, in the method's order
 }
 
 // An Engine is the program that made a record.
@@ -58,8 +59,11 @@ type Injection struct {
 	StartTime  string          `json:"file_start_time,omitempty"`
 	Instrument string          `json:"file_instrument,omitempty"`
 	Software   string          `json:"file_software,omitempty"`
+	FileMethod string          `json:"file_method,omitempty"`
 	SampleCode string          `json:"file_sample_code,omitempty"`
 	Warnings   []trace.Warning `json:"warnings,omitempty"`
+
+	StoredPeaks []trace.StoredPeak `json:"stored_peaks,omitempty"` // the file's own peak table: what the instrument said
 
 	Measurements []Measurement `json:"measurements,omitempty"` // none for an excluded injection
 }
@@ -71,6 +75,8 @@ type Measurement struct {
 
 	TraceID    string           `json:"trace_id"` // in the file
 	Transition trace.Transition `json:"transition"`
+	Extraction *Extraction      `json:"extraction,omitempty"`     // only for an ion trace taken from spectra
+	Unit       string           `json:"intensity_unit,omitempty"` // where the file states one; otherwise detector counts
 	Points     int              `json:"points"`
 	FirstMin   float64          `json:"first_min"`
 	LastMin    float64          `json:"last_min"`
@@ -85,6 +91,41 @@ type Measurement struct {
 	Automatic *peak.Peak    `json:"automatic,omitempty"` // only where a manual integration replaced it
 	Manual    *ManualAction `json:"manual,omitempty"`
 	Others    []peak.Peak   `json:"other_peaks,omitempty"` // found in the trace and not used
+
+	Stored   *StoredMatch    `json:"stored_peak,omitempty"` // the instrument's own peak at this place
+	Spectrum *PeakSpectrum   `json:"spectrum,omitempty"`
+	Warnings []trace.Warning `json:"warnings,omitempty"` // about this trace
+}
+
+// An Extraction says how an ion trace was taken from spectra.
+type Extraction struct {
+	Algorithm string   `json:"algorithm"`
+	LowMZ     float64  `json:"low_mz"` // both ends included
+	HighMZ    float64  `json:"high_mz"`
+	Combine   string   `json:"combine"` // "sum" or "maximum"
+	MSLevel   int      `json:"ms_level"`
+	FromMin   *float64 `json:"from_min,omitempty"`
+	ToMin     *float64 `json:"to_min,omitempty"`
+}
+
+// A StoredMatch is the peak of the file's own table whose apex lies within the limits of the peak that was used.
+type StoredMatch struct {
+	Index           int      `json:"index"`                     // in Injection.StoredPeaks
+	AreaDifference  *float64 `json:"area_difference,omitempty"` // ours / the instrument's − 1
+	ApexDifference  float64  `json:"apex_difference_min"`       // ours − the instrument's
+	StartDifference *float64 `json:"start_difference_min,omitempty"`
+	EndDifference   *float64 `json:"end_difference_min,omitempty"`
+}
+
+// A PeakSpectrum is the spectrum of a peak, taken from full-scan data.
+type PeakSpectrum struct {
+	Algorithm   string         `json:"algorithm"`
+	Scans       []string       `json:"scans"` // ids of those averaged
+	FromMin     float64        `json:"from_min"`
+	ToMin       float64        `json:"to_min"`
+	ToleranceMZ float64        `json:"tolerance_mz"`
+	Background  []string       `json:"background_scans,omitempty"`
+	Spectrum    trace.Spectrum `json:"spectrum"`
 }
 
 // A ManualAction says who changed an integration and why.
@@ -102,10 +143,11 @@ type Analyte struct {
 	Name string        `json:"name"`
 	Kind casefile.Kind `json:"kind"`
 
-	Reference        Reference          `json:"reference"`
-	Identifications  []Identification   `json:"identifications"`             // sample aliquots, negative controls and blanks with a peak
-	InternalStandard []InternalResponse `json:"internal_standard_responses"` // whole sequence
-	Blanks           []Blank            `json:"blanks"`
+	Reference         Reference          `json:"reference"`
+	ReferenceSpectrum *ReferenceSpectrum `json:"reference_spectrum,omitempty"`
+	Identifications   []Identification   `json:"identifications"`             // sample aliquots, negative controls and blanks with a peak
+	InternalStandard  []InternalResponse `json:"internal_standard_responses"` // whole sequence
+	Blanks            []Blank            `json:"blanks"`
 
 	Calibration *Calibration    `json:"calibration,omitempty"` // absent where the method has none, or it could not be fitted
 	NoFit       string          `json:"no_fit,omitempty"`      // why a calibration that was asked for could not be fitted
@@ -113,6 +155,15 @@ type Analyte struct {
 	Aliquots    []Concentration `json:"aliquots,omitempty"`
 	Result      *Result         `json:"result,omitempty"` // absent where any aliquot has no concentration
 	NoResult    string          `json:"no_result,omitempty"`
+}
+
+// A ReferenceSpectrum is the spectrum of a reference material that the method names.
+type ReferenceSpectrum struct {
+	File     string         `json:"file"`
+	Title    string         `json:"title"`      // by the method
+	Stated   string         `json:"file_title"` // by the file
+	Origin   string         `json:"file_origin,omitempty"`
+	Spectrum trace.Spectrum `json:"spectrum"`
 }
 
 // A Statistic is a mean with its spread, over named injections.

@@ -8,12 +8,12 @@ import (
 // tableLayout puts what the method declares of a delimited text file into the reader's terms.
 func tableLayout(t casefile.TableLayout) table.Layout {
 	l := table.Layout{
-		Separator:   map[string]byte{"comma": ',', "semicolon": ';', "tab": '\t'}[t.Separator],
+		Separator:   map[string]byte{"comma": ',', "semicolon": ';', "tab": '\t', "space": ' '}[t.Separator],
 		DecimalMark: map[string]byte{"point": '.', "comma": ','}[t.DecimalMark],
-		HeaderLines: t.HeaderLines, TimeColumn: t.TimeColumn, TimeUnit: t.TimeUnit,
+		Encoding:    t.Encoding, HeaderLines: t.HeaderLines, TimeColumn: t.TimeColumn, TimeUnit: t.TimeUnit,
 	}
 	for _, c := range t.Columns {
-		l.Columns = append(l.Columns, table.Column{Column: c.Column, ID: c.ID, Transition: c.Transition})
+		l.Columns = append(l.Columns, table.Column{Column: c.Column, ID: c.ID, Unit: c.Unit, Transition: c.Transition})
 	}
 	return l
 }

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"path"
+	"reflect"
 	"slices"
 	"strings"
 
@@ -47,6 +48,7 @@ func (l *loader) checkMethod() {
 			l.inMethod(key+".internal_standard", quote(a.InternalStandard), "the id of an internal standard: "+strings.Join(standards, ", "), strictyaml.Suggest(a.InternalStandard, standards))
 		}
 		l.transitions(key, a)
+		l.spectrum(key, a.Spectrum)
 		l.retention(key, a.ExpectedRetentionMin, a.RetentionWindowMin)
 		l.quantification(key, a)
 	}
@@ -71,16 +73,45 @@ func (l *loader) transitions(key string, a Analyte) {
 	for i, q := range a.Qualifiers {
 		place := fmt.Sprintf("%s.qualifiers[%d]", key, i)
 		l.transition(place, q)
-		if q == a.Quantifier || slices.Contains(a.Qualifiers[:i], q) {
+		if reflect.DeepEqual(q, a.Quantifier) || slices.ContainsFunc(a.Qualifiers[:i], func(o Transition) bool { return reflect.DeepEqual(o, q) }) {
 			l.inMethod(place, "a transition a second time", "each transition of an analyte once", "")
 		}
 	}
 }
 
-// transition: it needs its ions, or the name that the file gives the trace.
+// transition: it needs its ions, the name that the file gives the trace, or an ion to take from spectra; and only one of them.
 func (l *loader) transition(key string, t Transition) {
-	if t.TraceID == "" && (t.PrecursorMZ == 0 || t.ProductMZ == 0) {
-		l.inMethod(key, "neither both ions nor a trace_id", "precursor and product, or trace_id", "")
+	switch {
+	case t.Ion != nil && (t.TraceID != "" || t.ProductMZ != 0):
+		l.inMethod(key, "an ion and a recorded trace", "one of them: ion (with precursor for spectra of the second stage), or precursor and product, or trace_id", "")
+	case t.Ion == nil && t.TraceID == "" && (t.PrecursorMZ == 0 || t.ProductMZ == 0):
+		l.inMethod(key, "neither both ions nor a trace_id nor an ion", "precursor and product, or trace_id, or ion", "")
+	}
+	if t.Ion == nil {
+		return
+	}
+	if (t.Ion.ToleranceMZ == nil) == (t.Ion.TolerancePPM == nil) {
+		l.inMethod(key+".ion", "a window with two half widths or none", "either tolerance or tolerance_ppm", "")
+	}
+	if from, to := t.Ion.FromMin, t.Ion.ToMin; from != nil && to != nil && *from >= *to {
+		l.inMethod(key+".ion.to", minutes(*to), "more than "+minutes(*from)+", where the trace begins", "")
+	}
+}
+
+// spectrum: background spans have a length and lie outside the peak's apex.
+func (l *loader) spectrum(key string, r *SpectrumRule) {
+	if r == nil {
+		return
+	}
+	for i, b := range r.Background {
+		if b.FromMin >= b.ToMin || b.FromMin <= 0 && b.ToMin >= 0 {
+			l.inMethod(fmt.Sprintf("%s.spectrum.background[%d]", key, i), fmt.Sprintf("%s to %s from the apex", minutes(b.FromMin), minutes(b.ToMin)), "a span before the apex, or after it", "")
+		}
+	}
+	if ref := r.Reference; ref != nil {
+		if got, hint := l.missing(ref.File); ref.File != "" && got != "" {
+			l.inMethod(key+".spectrum.reference.file", got, "the path of a file in the case folder", hint)
+		}
 	}
 }
 

@@ -96,7 +96,12 @@ func (l *loader) checkFiles() {
 		}
 		known[row.File] = true
 	}
-	if !l.caseWhole || !l.sequenceWhole {
+	for _, a := range l.folder.Method.Analytes {
+		if a.Spectrum != nil && a.Spectrum.Reference != nil {
+			known[a.Spectrum.Reference.File] = true
+		}
+	}
+	if !l.caseWhole || !l.sequenceWhole || l.methodDoc != nil && !l.methodWhole {
 		return // what they name is not known as a whole
 	}
 	for _, p := range l.present {

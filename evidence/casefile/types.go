@@ -179,9 +179,10 @@ type Instrument struct {
 
 // A TableLayout declares the columns of delimited text files whose path matches Files.
 type TableLayout struct {
-	Files       string        `json:"files" key:"files" doc:"Path pattern, such as raw/*.csv."`                                    // path pattern, such as "raw/*.csv"
-	Separator   string        `json:"separator" key:"separator" enum:"comma|semicolon|tab" doc:"What stands between the columns."` // "comma", "semicolon", "tab"
+	Files       string        `json:"files" key:"files" doc:"Path pattern, such as raw/*.csv."` // path pattern, such as "raw/*.csv"
+	Separator   string        `json:"separator" key:"separator" enum:"comma|semicolon|tab|space" doc:"What stands between the columns."`
 	DecimalMark string        `json:"decimal_mark" key:"decimal_mark" enum:"point|comma" doc:"Point or comma in numbers."`
+	Encoding    string        `json:"encoding,omitempty" key:"encoding,optional" enum:"utf-8|utf-16|latin-1" doc:"Encoding of the text; utf-8 without it."`
 	HeaderLines int           `json:"header_lines" key:"header_lines" min:"0" doc:"Lines before the first row of numbers."`
 	TimeColumn  int           `json:"time_column" key:"time_column" min:"1" doc:"Counted from 1."`           // from 1
 	TimeUnit    string        `json:"time_unit" key:"time_unit" enum:"min|s" doc:"Unit of the time column."` // "min" or "s"
@@ -191,6 +192,7 @@ type TableLayout struct {
 type TableColumn struct {
 	Column int    `json:"column" key:"column" min:"1" doc:"Counted from 1."` // from 1
 	ID     string `json:"id" key:"id" doc:"Name of the trace."`
+	Unit   string `json:"unit,omitempty" key:"unit,optional" doc:"Unit of the intensity, such as mAU; counts without it."`
 	trace.Transition
 }
 
@@ -226,10 +228,54 @@ type InternalStandard struct {
 	Transition           Transition `json:"transition" key:"transition" doc:"What is monitored for it."`
 }
 
-// A Transition is one monitored reaction, or, for a table, a named column.
+// A Transition is one trace: a monitored reaction or ion, a trace by the name that the file gives it, or an ion trace that is taken
+// from full-scan data.
 type Transition struct {
 	trace.Transition
-	TraceID string `json:"trace_id,omitempty" key:"trace_id,optional" doc:"Where the file names the trace instead of its ions."` // where the file names the trace instead of its ions
+	TraceID string    `json:"trace_id,omitempty" key:"trace_id,optional" doc:"Where the file names the trace instead of its ions."` // where the file names the trace instead of its ions
+	Ion     *IonTrace `json:"ion,omitempty" key:"ion,optional" doc:"An ion trace, taken from the spectra of full-scan data."`
+}
+
+// An IonTrace is taken from spectra: of the first stage, or, with a precursor beside it, of the second.
+type IonTrace struct {
+	MZ           float64  `json:"mz" key:"mz" above:"0" doc:"m/z of the ion."`
+	ToleranceMZ  *float64 `json:"tolerance_mz,omitempty" key:"tolerance,optional" above:"0" max:"5" doc:"Half width of its window in m/z; either this or tolerance_ppm."`
+	TolerancePPM *float64 `json:"tolerance_ppm,omitempty" key:"tolerance_ppm,optional" above:"0" max:"1000" doc:"Half width of its window in millionths of m/z."`
+	Combine      string   `json:"combine" key:"combine" enum:"sum|maximum" doc:"What becomes of several points in the window."`
+	FromMin      *float64 `json:"from_min,omitempty" key:"from,optional" unit:"min" min:"0" doc:"Where the trace begins; without it, with the run."`
+	ToMin        *float64 `json:"to_min,omitempty" key:"to,optional" unit:"min" above:"0" doc:"Where the trace ends; without it, with the run."`
+}
+
+// A SpectrumRule says how the spectrum of an analyte's peak is taken from full-scan data, and what it is shown beside.
+type SpectrumRule struct {
+	Take        string             `json:"take" key:"take" enum:"apex|average" doc:"apex: the scan nearest to the apex; average: the mean over the upper half of the peak."`
+	MSLevel     *int               `json:"ms_level,omitempty" key:"ms_level,optional" min:"1" max:"10" doc:"Stage of the spectra; 1 without it."`
+	ToleranceMZ float64            `json:"tolerance_mz" key:"tolerance" above:"0" max:"1" doc:"How far the m/z of one peak may lie apart in two scans."`
+	Background  []BackgroundSpan   `json:"background,omitempty" key:"background,optional" doc:"Where the background is taken that is subtracted."`
+	Reference   *ReferenceSpectrum `json:"reference,omitempty" key:"reference,optional" doc:"A spectrum of the reference material, in a file of this folder."`
+}
+
+// A BackgroundSpan lies so far before (negative) or after the apex.
+type BackgroundSpan struct {
+	FromMin float64 `json:"from_min" key:"from" unit:"min" doc:"Start, from the apex; before it, below zero."`
+	ToMin   float64 `json:"to_min" key:"to" unit:"min" doc:"End, from the apex."`
+}
+
+type ReferenceSpectrum struct {
+	File  string `json:"file" key:"file" format:"path" doc:"A JCAMP-DX file with the mass spectrum, in this folder."`
+	Title string `json:"title" key:"title" doc:"What it is a spectrum of, and where it comes from."`
+}
+
+// Transitions lists every trace that the method follows: those of the internal standards, then of the analytes, quantifier first.
+func (m *Method) Transitions() []Transition {
+	var list []Transition
+	for _, s := range m.InternalStandards {
+		list = append(list, s.Transition)
+	}
+	for _, a := range m.Analytes {
+		list = append(append(list, a.Quantifier), a.Qualifiers...)
+	}
+	return list
 }
 
 // Kind of an analyte: what is asked of it.
@@ -241,17 +287,18 @@ const (
 )
 
 type Analyte struct {
-	ID                   string       `json:"id" key:"id" pattern:"^[a-z0-9][a-z0-9-]*$" doc:"Short name without blanks, used to refer to it."`
-	Name                 string       `json:"name" key:"name" doc:"Name in the package."`
-	Kind                 Kind         `json:"kind" key:"kind" enum:"threshold|presence" doc:"threshold: compared with a limit; presence: reported where it is found."`
-	InternalStandard     string       `json:"internal_standard" key:"internal_standard" doc:"Id of an internal standard."`
-	ExpectedRetentionMin float64      `json:"expected_retention_min" key:"expected_retention" unit:"min" above:"0" doc:"Where its peak is expected."`
-	RetentionWindowMin   float64      `json:"retention_window_min" key:"retention_window" unit:"min" above:"0" doc:"Half width of the search window."`
-	Quantifier           Transition   `json:"quantifier" key:"quantifier" doc:"The transition that is measured."`
-	Qualifiers           []Transition `json:"qualifiers" key:"qualifiers" minitems:"1" doc:"The transitions that confirm the identity."`
-	Unit                 string       `json:"unit" key:"unit" enum:"ng/mL|ug/mL|mg/mL|pg/mL|ug/L|mg/L" doc:"Unit that people read."` // for people: "ng/mL", "ug/mL"
-	Calibration          *Calibration `json:"calibration,omitempty" key:"calibration,optional" doc:"Needed for a threshold analyte."`
-	Uncertainty          *Uncertainty `json:"uncertainty,omitempty" key:"uncertainty,optional" doc:"Needed for a threshold analyte."`
+	ID                   string        `json:"id" key:"id" pattern:"^[a-z0-9][a-z0-9-]*$" doc:"Short name without blanks, used to refer to it."`
+	Name                 string        `json:"name" key:"name" doc:"Name in the package."`
+	Kind                 Kind          `json:"kind" key:"kind" enum:"threshold|presence" doc:"threshold: compared with a limit; presence: reported where it is found."`
+	InternalStandard     string        `json:"internal_standard" key:"internal_standard" doc:"Id of an internal standard."`
+	ExpectedRetentionMin float64       `json:"expected_retention_min" key:"expected_retention" unit:"min" above:"0" doc:"Where its peak is expected."`
+	RetentionWindowMin   float64       `json:"retention_window_min" key:"retention_window" unit:"min" above:"0" doc:"Half width of the search window."`
+	Quantifier           Transition    `json:"quantifier" key:"quantifier" doc:"The transition that is measured."`
+	Qualifiers           []Transition  `json:"qualifiers" key:"qualifiers" minitems:"1" doc:"The transitions that confirm the identity."`
+	Spectrum             *SpectrumRule `json:"spectrum,omitempty" key:"spectrum,optional" doc:"How its spectrum is taken from full-scan data."`
+	Unit                 string        `json:"unit" key:"unit" enum:"ng/mL|ug/mL|mg/mL|pg/mL|ug/L|mg/L" doc:"Unit that people read."` // for people: "ng/mL", "ug/mL"
+	Calibration          *Calibration  `json:"calibration,omitempty" key:"calibration,optional" doc:"Needed for a threshold analyte."`
+	Uncertainty          *Uncertainty  `json:"uncertainty,omitempty" key:"uncertainty,optional" doc:"Needed for a threshold analyte."`
 }
 
 type Calibration struct {

@@ -22,9 +22,9 @@ const (
 
 var byteOrderMark = []byte("\xef\xbb\xbf")
 
-// Read reads the declared columns. Text is UTF-8, with or without a byte-order mark, with LF or CRLF. Numbers are plain decimals;
-// every point has as many fields as the first; times must increase; empty lines may stand at the end only. A last point without
-// a line end may have lost digits, which gives the warning "unfinished-line". The error is a
+// Read reads the declared columns. Text is in the declared encoding, with or without a byte-order mark (UTF-16 needs one), with LF
+// or CRLF. Numbers are plain decimals; every point has as many fields as the first; times must increase; empty lines may stand at
+// the end only. A last point without a line end may have lost digits, which gives the warning "unfinished-line". The error is a
 // *trace.SyntaxError with line and column (in characters, of the field's start), or says what is wrong with the layout.
 func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	if err := layout.check(); err != nil {
@@ -34,13 +34,33 @@ func Read(name string, src trace.Source, layout Layout) (*trace.File, error) {
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", name, err)
 	}
-	r := &reader{name: name, layout: layout, width: layout.width(), intensity: make([][]float64, len(layout.Columns))}
-	data = bytes.TrimPrefix(data, byteOrderMark)
+	r := &reader{name: name, layout: layout, width: layout.width(), target: layout.targets(), intensity: make([][]float64, len(layout.Columns)), row: make([]float64, 1+len(layout.Columns))}
+	r.valid = layout.Encoding == "latin-1"
+	if data, err = r.decode(data); err != nil {
+		return nil, err
+	}
+	r.valid = utf8.Valid(data)
+	// No more points than lines, and none without two bytes for each field.
+	points := min(1+bytes.Count(data, []byte("\n")), 1+len(data)/(2*r.width))
+	r.time = make([]float64, 0, points)
+	for i := range r.intensity {
+		r.intensity[i] = make([]float64, 0, points)
+	}
 	for len(data) > 0 {
-		var line []byte
-		line, data, r.ended = bytes.Cut(data, []byte("\n"))
-		r.ended = r.ended || len(bytes.TrimSpace(line)) == 0
-		if err := r.take(bytes.TrimSuffix(line, []byte("\r"))); err != nil {
+		line, rest := data, []byte(nil)
+		if i := bytes.IndexByte(data, '\n'); i >= 0 {
+			line, rest, r.ended = data[:i], data[i+1:], true
+		} else {
+			r.ended = len(bytes.TrimSpace(line)) == 0
+		}
+		data = rest
+		if n := len(line); n > 0 && line[n-1] == '\r' {
+			line = line[:n-1]
+		}
+		if r.fields > 0 && r.empty == 0 && r.valid && r.fast(line) {
+			continue
+		}
+		if err := r.take(line); err != nil {
 			return nil, err
 		}
 	}
@@ -55,8 +75,14 @@ type reader struct {
 	fields int  // of the first point
 	empty  int  // line of an empty line, after which nothing may follow
 	ended  bool // whether the line read last has its end
+	valid  bool // the whole text is UTF-8
+	target []int
+	row    []float64 // memory of fast
 
-	written   string  // the last time as the file writes it
+	written   string // the last time as the file writes it; after fast, it is in lastLine
+	lastLine  []byte
+	lastFrom  int
+	lastTo    int
 	last      float64 // the same as a number, in the file's unit
 	time      []float64
 	intensity [][]float64
@@ -69,7 +95,7 @@ func (r *reader) fail(column int, got, want, hint string) error {
 // take reads one line.
 func (r *reader) take(line []byte) error {
 	r.line++
-	if !utf8.Valid(line) {
+	if !r.valid && !utf8.Valid(line) {
 		return r.fail(1+validRunes(line), "text that is not UTF-8", "UTF-8", "")
 	}
 	if r.line <= r.layout.HeaderLines {
@@ -84,7 +110,25 @@ func (r *reader) take(line []byte) error {
 	if r.empty > 0 {
 		return r.fail(1, fmt.Sprintf("a point after the empty line %d", r.empty), "points without gaps", "take the empty line out, if nothing is missing there")
 	}
-	return r.point(strings.Split(string(line), string(r.layout.Separator)))
+	return r.point(r.split(string(line)))
+}
+
+// split takes a line apart. Blanks as separators count as one, and those at the ends as none: the fields before them are kept as
+// long as they are, so that places stay right.
+func (r *reader) split(line string) []string {
+	if r.layout.Separator != ' ' {
+		return strings.Split(line, string(r.layout.Separator))
+	}
+	var fields []string
+	pending := ""
+	for _, f := range strings.Split(strings.TrimRight(line, " \t"), " ") {
+		if strings.Trim(f, "\t") == "" {
+			pending += f + " "
+			continue
+		}
+		fields, pending = append(fields, pending+f), ""
+	}
+	return fields
 }
 
 // validRunes counts the characters before the first byte that is not UTF-8.
@@ -118,9 +162,9 @@ func (r *reader) point(fields []string) error {
 	}
 	written := strings.Trim(fields[at-1], " \t")
 	if len(r.time) > 0 && t <= r.last {
-		return r.fail(start(fields, at), strconv.Quote(written), fmt.Sprintf("a time after %s %s", r.written, r.layout.TimeUnit), orderHint)
+		return r.fail(start(fields, at), strconv.Quote(written), fmt.Sprintf("a time after %s %s", r.before(), r.layout.TimeUnit), orderHint)
 	}
-	r.last, r.written = t, written
+	r.last, r.written, r.lastLine = t, written, nil
 	if r.layout.TimeUnit == "s" {
 		t /= 60
 	}
@@ -133,6 +177,14 @@ func (r *reader) point(fields []string) error {
 		r.intensity[i] = append(r.intensity[i], y)
 	}
 	return nil
+}
+
+// before is the last time as the file writes it.
+func (r *reader) before() string {
+	if r.lastLine != nil {
+		return string(r.lastLine[r.lastFrom:r.lastTo])
+	}
+	return r.written
 }
 
 func (r *reader) number(fields []string, column int) (float64, error) {
@@ -177,7 +229,7 @@ func (r *reader) finish() (*trace.File, error) {
 		file.Warnings = append(file.Warnings, trace.Warning{Code: "unfinished-line", Detail: fmt.Sprintf("line %d, the last, has no line end: the file may be cut", r.line)})
 	}
 	for i, c := range r.layout.Columns {
-		t := trace.Chromatogram{ID: c.ID, Kind: kind(c.Transition), Transition: c.Transition, TimeMin: slices.Clone(r.time), Intensity: r.intensity[i]}
+		t := trace.Chromatogram{ID: c.ID, Kind: kind(c.Transition), Transition: c.Transition, Unit: c.Unit, TimeMin: slices.Clone(r.time), Intensity: r.intensity[i]}
 		if b := t.Check(); b != nil {
 			return nil, &trace.SyntaxError{File: r.name, Line: r.layout.HeaderLines + b.Point, Got: fmt.Sprintf("%s in the trace %q", b.Got, c.ID), Want: b.Want, Hint: orderHint}
 		}

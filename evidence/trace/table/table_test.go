@@ -98,7 +98,7 @@ func TestDamaged(t *testing.T) {
 		{"empty_line_between", simple, strings.Replace(good, "4.2817", "\n4.2817", 1), `4:1: got a point after the empty line 3, want points without gaps`},
 		{"no_points", simple, "time,counts\n", `2:1: got the end of the file, want points after 1 header lines`},
 		{"not_utf8", simple, strings.Replace(good, "counts", "counts \xb5V", 1), `1:13: got text that is not UTF-8, want UTF-8`},
-		{"utf16", simple, "\xff\xfet\x00,\x00c\x00\n\x00", `1:1: got text that is not UTF-8, want UTF-8`},
+		{"utf16", simple, "\xff\xfet\x00,\x00c\x00\n\x00", `1:1: got text in UTF-16, want UTF-8`},
 		{"other_separator", simple, strings.ReplaceAll(good, ",", ";"), `2:1: got a line of 1 fields, want at least 2`},
 		{"decimal_point_for_comma", semicolon, "Zeit;µV\n4,2800;12\n4.2817;15\n", `3:1: got "4.2817", want a decimal number with a comma`},
 		{"thousands_point", semicolon, "Zeit;µV\n4,2800;1.200,5\n", `2:8: got "1.200,5", want a decimal number with a comma`},
