@@ -40,6 +40,7 @@ func (b *batchJudge) all() {
 		b.controls()
 	}
 	b.bracket()
+	b.recorded()
 }
 
 func (b *batchJudge) start(name, title string, required bool, evidence ...string) Check {

@@ -18,6 +18,7 @@ func (j *judge) caseChecks() {
 	j.methodInForce()
 	j.materials()
 	j.order()
+	j.files()
 	j.manual()
 	j.warnings()
 	j.deviations()
