@@ -101,6 +101,14 @@ func (d *document) rawFiles() {
 			}
 			warnings = joined("; ", warnings, w.Code+": "+w.Detail)
 		}
+		for _, m := range inj.Measurements {
+			for _, w := range m.Warnings {
+				if warnings == d.t("none") {
+					warnings = ""
+				}
+				warnings = joined("; ", warnings, joined(" ", m.Compound, d.words.or("trace.", m.Trace))+": "+w.Detail)
+			}
+		}
 		rows = append(rows, row{cells: cells(inj.ID, inj.File, inj.Format, when(inj.StartTime), inj.SampleCode, warnings, d.shortHash(inj.File))})
 	}
 	d.table(table{name: "raw-files", columns: "lwlwwwm", rows: rows, bare: true})

@@ -50,6 +50,9 @@ func (d *document) chart(inj *evidence.Injection, m *evidence.Measurement, s spa
 // ionTitle names what a trace followed.
 func (d *document) ionTitle(m *evidence.Measurement) string {
 	name := d.words.or("trace.", m.Trace)
+	if x := m.Extraction; x != nil {
+		return name + "  " + d.t("chart.window", "low", number(x.LowMZ, 7), "high", number(x.HighMZ, 7))
+	}
 	if m.Transition.ProductMZ == 0 {
 		return name + "  " + m.TraceID
 	}
@@ -118,13 +121,21 @@ func (c *traceChart) draw() {
 func (c *traceChart) foot(largest float64, drawn int, recorded []float64) {
 	d := c.d
 	d.font(regular, 6.5)
-	d.textRight(c.xs.p1, c.vs.p1-0.5, d.t("chart.largest", "counts", powered(largest, 3)), soft)
+	d.textRight(c.xs.p1, c.vs.p1-0.5, d.t("chart.largest", "counts", powered(largest, 3), "unit", c.unit()), soft)
 	key := "chart.points"
 	if drawn < len(c.ts) {
 		key = "chart.points-thinned"
 	}
 	d.textRight(c.xs.p1, c.vs.p0+6.4, d.t(key, "drawn", itoa(drawn), "shown", itoa(len(c.ts)), "recorded", itoa(len(recorded))), soft)
 	d.text(c.xs.p0, c.vs.p0+6.4, d.t("chart.minutes"), soft)
+}
+
+// unit is that of the intensity.
+func (c *traceChart) unit() string {
+	if c.m.Unit != "" {
+		return c.m.Unit
+	}
+	return c.d.t("chart.counts")
 }
 
 // axes draws time and counts, with short marks.

@@ -79,7 +79,22 @@ func reaction(t casefile.Transition) string {
 	if t.TraceID != "" {
 		return t.TraceID
 	}
+	if t.Ion != nil {
+		return ionWindow(t)
+	}
 	return fmt.Sprintf("%.1f → %.1f", t.PrecursorMZ, t.ProductMZ)
+}
+
+// ionWindow writes an ion that is taken from spectra, with its window and, for the second stage, its precursor.
+func ionWindow(t casefile.Transition) string {
+	text := plain(t.Ion.MZ)
+	if t.PrecursorMZ > 0 {
+		text = plain(t.PrecursorMZ) + " → " + text
+	}
+	if t.Ion.TolerancePPM != nil {
+		return text + " ± " + plain(*t.Ion.TolerancePPM) + " ppm, " + t.Ion.Combine
+	}
+	return text + " ± " + plain(*t.Ion.ToleranceMZ) + ", " + t.Ion.Combine
 }
 
 func (d *document) parameters() {

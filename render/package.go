@@ -27,6 +27,10 @@ func (d *document) packageSections() []section {
 		{key: "batch", title: d.t("batch.title"), draw: d.sequence},
 		{key: "batch-checks", title: d.t("batch-checks.title"), level: 1, need: 60, draw: d.batchAtAGlance},
 		{key: "raw-files", title: d.t("raw-files.title"), level: 1, need: 40, draw: d.rawFiles},
+		{key: "cross", title: d.t("cross.title"), level: 1, need: 20, draw: d.crossChecks},
+	}
+	if d.hasStored() {
+		list = append(list, section{key: "stored", title: d.t("stored.title"), level: 1, need: 50, draw: d.stored})
 	}
 	analytes := d.in.Record.Analytes
 	for k := range analytes {
@@ -65,6 +69,9 @@ func (d *document) analyteSections(k int) []section {
 	list := []section{
 		{key: "analyte/" + a.ID, title: a.Name, draw: func() { d.analyteOutcome(k) }},
 		{key: "identity/" + a.ID, title: d.t("identity.title"), level: 1, need: 60, draw: func() { d.identity(k) }},
+	}
+	if d.hasSpectra(a.ID) {
+		list = append(list, section{key: "spectra/" + a.ID, title: d.t("spectra.title"), level: 1, need: 110, draw: func() { d.spectra(k) }})
 	}
 	if a.Calibration != nil || a.NoFit != "" {
 		list = append(list, section{key: "calibration/" + a.ID, title: d.t("calibration.title"), level: 1, need: 130, draw: func() { d.calibration(k) }})
