@@ -17,7 +17,7 @@ func readRaw(name string, src trace.Source, tables []casefile.TableLayout) (*tra
 	return formats.Read(name, src, func(name string) (table.Layout, bool) {
 		for _, t := range tables {
 			if ok, err := path.Match(t.Files, name); err == nil && ok {
-				return tableLayout(t), true
+				return TableLayout(t), true
 			}
 		}
 		return table.Layout{}, false

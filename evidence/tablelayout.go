@@ -5,8 +5,8 @@ import (
 	"assaywrit/evidence/trace/table"
 )
 
-// tableLayout puts what the method declares of a delimited text file into the reader's terms.
-func tableLayout(t casefile.TableLayout) table.Layout {
+// TableLayout puts what the method declares of a delimited text file into the reader's terms.
+func TableLayout(t casefile.TableLayout) table.Layout {
 	l := table.Layout{
 		Separator:   map[string]byte{"comma": ',', "semicolon": ';', "tab": '\t', "space": ' '}[t.Separator],
 		DecimalMark: map[string]byte{"point": '.', "comma": ','}[t.DecimalMark],
