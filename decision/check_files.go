@@ -6,6 +6,7 @@ import (
 
 	"assaywrit/evidence"
 	"assaywrit/evidence/casefile"
+	"assaywrit/evidence/peak"
 )
 
 // files are the checks of the raw files against each other and against the sequence.
@@ -49,7 +50,7 @@ func (j *judge) agreement(name, title string, required bool, rule, passed string
 }
 
 // Faults of a recorded peak: with these its area is not what was there.
-var peakFaults = []string{evidence.FlatTop, evidence.CutByEnd, evidence.GapInPeak}
+var peakFaults = []string{peak.FlagSaturated, peak.FlagCutAtStart, peak.FlagCutAtEnd, evidence.GapInPeak}
 
 // recorded: the peaks that an analyte's result rests on were recorded as a whole, in the sample, the calibrators and the controls.
 func (b *batchJudge) recorded() {
@@ -57,23 +58,35 @@ func (b *batchJudge) recorded() {
 	advice := b.start("trace-quality", "Quality of the traces", false).custom("what a trace shows of its acquisition is reported").passIf(true)
 	standard := methodOf(b.rec, b.a.ID).InternalStandard
 	faults, remarks := "", ""
-	for i, inj := range b.rec.Injections {
+	note := func(inj *evidence.Injection, m *evidence.Measurement, code, detail, at string) {
+		to, text := &advice, &remarks
+		if slices.Contains(peakFaults, code) {
+			to, text = &c, &faults
+		}
+		to.Evidence = append(to.Evidence, at)
+		if *text == "" {
+			*text = fmt.Sprintf("injection %s, %s %s: %s", inj.ID, m.Compound, m.Trace, detail)
+		}
+	}
+	for i := range b.rec.Injections {
+		inj := &b.rec.Injections[i]
 		if inj.Role != casefile.SampleAliquot && inj.Role != casefile.Calibrator && inj.Role != casefile.Control {
 			continue
 		}
-		for k, m := range inj.Measurements {
+		for k := range inj.Measurements {
+			m := &inj.Measurements[k]
 			if m.Compound != b.a.ID && m.Compound != standard {
 				continue
 			}
+			at := fmt.Sprintf("/injections/%d/measurements/%d", i, k)
 			for _, w := range m.Warnings {
-				to, text := &advice, &remarks
-				if slices.Contains(peakFaults, w.Code) {
-					to, text = &c, &faults
-				}
-				to.Evidence = append(to.Evidence, fmt.Sprintf("/injections/%d/measurements/%d/warnings", i, k))
-				if *text == "" {
-					*text = fmt.Sprintf("injection %s, %s %s: %s", inj.ID, m.Compound, m.Trace, w.Detail)
-				}
+				note(inj, m, w.Code, w.Detail, at+"/warnings")
+			}
+			if m.Peak == nil {
+				continue
+			}
+			for _, f := range m.Peak.Flags {
+				note(inj, m, f, "the peak is flagged "+f, at+"/peak/flags")
 			}
 		}
 	}
@@ -86,5 +99,5 @@ func (b *batchJudge) recorded() {
 		b.add(c)
 	}
 	finish(c, faults, "No peak that the result rests on has a flat top, is cut by the end of its recording or lacks points.")
-	finish(advice, remarks, "No trace has gaps, too few points across a peak or counts below zero.")
+	finish(advice, remarks, "No trace has gaps or counts below zero, and no peak is flagged.")
 }

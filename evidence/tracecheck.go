@@ -7,22 +7,15 @@ import (
 	"assaywrit/evidence/trace"
 )
 
-// What a trace can show of a fault of the detector or of the acquisition. The names are kept in records.
+// What a trace can show of a fault of its acquisition, beside the flags of its peaks. The names are kept in records.
 const (
-	FlatTop      = "flat-top"             // the detector was at its limit: the peak is higher than it could say
-	CutByEnd     = "peak-cut-by-trace"    // the recording begins or ends inside the peak
 	GapInPeak    = "sampling-gap-in-peak" // points are missing inside the peak
 	GapInTrace   = "sampling-gap"         // points are missing elsewhere
-	FewPoints    = "few-points"           // too few points describe the peak
 	NegativeIons = "negative-values"      // ions cannot be fewer than none
 )
 
-const (
-	flatPoints  = 3   // consecutive points at the very same highest value
-	flatNoise   = 10  // height over noise from which they are no chance
-	gapInterval = 1.5 // of the median interval
-	fewest      = 8   // points across a peak, for its area
-)
+// gapInterval is the length of an interval, in units of the median, from which points are missing.
+const gapInterval = 1.5
 
 // traceWarnings looks at the trace of a measurement, and closer at the peak in use.
 func traceWarnings(c trace.Chromatogram, m *Measurement) []trace.Warning {
@@ -48,37 +41,7 @@ func traceWarnings(c trace.Chromatogram, m *Measurement) []trace.Warning {
 			warn(NegativeIons, "%d of %d points are below zero: something was subtracted before the file was written", n, len(c.Intensity))
 		}
 	}
-	p := m.Peak
-	if p == nil {
-		return list
-	}
-	from, _ := slices.BinarySearch(c.TimeMin, p.StartMin)
-	to, _ := slices.BinarySearch(c.TimeMin, p.EndMin)
-	to = min(to, len(c.TimeMin)-1)
-	if n := to - from + 1; n < fewest {
-		warn(FewPoints, "%d points from the peak's start to its end; fewer than %d do not describe its shape", n, fewest)
-	}
-	if from == 0 || to == len(c.TimeMin)-1 {
-		warn(CutByEnd, "the peak reaches to the %s of the recording", map[bool]string{true: "beginning", false: "end"}[from == 0])
-	}
-	if run := longestTop(c.Intensity[from : to+1]); run >= flatPoints && p.SignalToNoise >= flatNoise {
-		warn(FlatTop, "%d consecutive points at the same highest value: the detector was probably saturated", run)
-	}
 	return list
-}
-
-// longestTop is the length of the longest run of points at the highest value.
-func longestTop(y []float64) int {
-	top, best, run := slices.Max(y), 0, 0
-	for _, v := range y {
-		if v != top {
-			run = 0
-			continue
-		}
-		run++
-		best = max(best, run)
-	}
-	return best
 }
 
 // samplingGaps counts the intervals that are longer than the median by the factor gapInterval, with the longest: inside the peak in
