@@ -114,6 +114,7 @@ func xmlDamages(t testing.TB, good string) []damage {
 		{"unclosed_tag", change("</chromatogramList>", ""), `"</run>", want </chromatogramList>`},
 		{"misspelt_tag", change("</product>", "</produkt>"), `"</produkt>", want </product>`},
 		{"unclosed_comment", change("<run", "<!-- <run"), `"<!--" without its end`},
+		{"billion_laughs", replaced(t, good, "<mzML", billionLaughs()+"<mzML"), "billion_laughs.mzML:2:1: got \"<!DOCTYPE\""},
 		{"doctype_entity", change("<mzML", "<!DOCTYPE mzML [<!ENTITY a \"aaaaaaaaaa\">]>\n<mzML"), `"<!DOCTYPE", want elements only`},
 		{"literal_section", change("<run", "<![CDATA[ ]]><run"), `"<![CDATA[", want elements only`},
 		{"unknown_entity", change(`name="C-0001"`, `name="&code;"`), `the entity "&code" in the attribute "name"`},
@@ -236,4 +237,13 @@ func TestAnyByteOfAnArray(t *testing.T) {
 
 func sameValues(a, b trace.Chromatogram) bool {
 	return fmt.Sprint(a.TimeMin, a.Intensity) == fmt.Sprint(b.TimeMin, b.Intensity)
+}
+
+// billionLaughs is a document type whose last entity stands for ten to the ninth words.
+func billionLaughs() string {
+	text := "<!DOCTYPE mzML [<!ENTITY l0 \"ha\">"
+	for i := range 9 {
+		text += fmt.Sprintf("<!ENTITY l%d \"%s\">", i+1, strings.Repeat(fmt.Sprintf("&l%d;", i), 10))
+	}
+	return text + "]>\n"
 }
