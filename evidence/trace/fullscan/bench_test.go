@@ -142,6 +142,32 @@ func extract(path string, workers int, wide bool, f Filter) (float64, error) {
 	return t.Intensity[0][len(t.TimeMin)/2], nil
 }
 
+// total is the sum of all intensities of a file, every array of which is decoded.
+func total(path string) (float64, error) {
+	file, err := os.Open(path)
+	if err != nil {
+		return 0, err
+	}
+	defer file.Close()
+	info, err := file.Stat()
+	if err != nil {
+		return 0, err
+	}
+	run, err := mzml.Read(path, io.NewSectionReader(file, 0, info.Size()))
+	if err != nil {
+		return 0, err
+	}
+	t, err := Extract(run.Scans, Filter{}, []Ion{{Window{0, 1e6}, Sum}}, runtime.GOMAXPROCS(0))
+	if err != nil {
+		return 0, err
+	}
+	sum := 0.0
+	for _, y := range t.Intensity[0] {
+		sum += y
+	}
+	return sum, nil
+}
+
 // floor decodes the base64 and undoes the zlib of every array with libraries, in memory, and nothing else.
 func floor(texts []string, sizes []int, workers int) error {
 	var group sync.WaitGroup

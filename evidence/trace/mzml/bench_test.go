@@ -30,7 +30,7 @@ func syntheticFile(b *testing.B, chromatograms, points int) []byte {
 }
 
 func BenchmarkRead(b *testing.B) {
-	for _, size := range []struct{ chromatograms, points int }{{10, 500}, {100, 500}, {100, 5000}} {
+	for _, size := range []struct{ chromatograms, points int }{{10, 500}, {100, 5000}, {10000, 1000}} {
 		b.Run(fmt.Sprintf("chromatograms=%d/points=%d", size.chromatograms, size.points), func(b *testing.B) {
 			data := syntheticFile(b, size.chromatograms, size.points)
 			b.SetBytes(int64(len(data)))

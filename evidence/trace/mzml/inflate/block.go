@@ -7,7 +7,7 @@ import "encoding/binary"
 const reserve = 3 + 258 + 8
 
 // block decodes the symbols of one block into dst from n on.
-func (d *Decoder) block(s *state, dst []byte, n int) (int, error) {
+func (d *tables) block(s *state, dst []byte, n int) (int, error) {
 	n, done, err := d.fast(s, dst[:cap(dst)], n)
 	if n > len(dst) {
 		return len(dst), ErrLong
@@ -19,7 +19,7 @@ func (d *Decoder) block(s *state, dst []byte, n int) (int, error) {
 }
 
 // fast decodes while there is room for a whole turn on both sides. done tells that the block has ended.
-func (d *Decoder) fast(s *state, dst []byte, n int) (_ int, done bool, err error) {
+func (d *tables) fast(s *state, dst []byte, n int) (_ int, done bool, err error) {
 	if s.fake > 0 {
 		return n, false, nil
 	}
@@ -135,7 +135,7 @@ func (s *state) tidy() {
 }
 
 // careful decodes symbol by symbol, up to the end of either side.
-func (d *Decoder) careful(s *state, dst []byte, n int) (int, error) {
+func (d *tables) careful(s *state, dst []byte, n int) (int, error) {
 	for {
 		s.fill()
 		e := d.literals[s.buf&(1<<literalBits-1)]

@@ -31,11 +31,9 @@ func build(table []uint32, tableBits int, lengths []uint8, entries *[288]uint32)
 	for _, l := range lengths {
 		count[l]++
 	}
-	for i := range table[:1<<tableBits] {
-		table[i] = invalid
-	}
 	if count[0] == len(lengths) {
-		return true // any use of it is an error
+		clearTo(table[:1<<tableBits]) // any use of it is an error
+		return true
 	}
 	count[0] = 0
 	left, next := 1, [maxBits + 2]int{}
@@ -45,8 +43,11 @@ func build(table []uint32, tableBits int, lengths []uint8, entries *[288]uint32)
 		}
 		next[l+1] = next[l] + count[l]
 	}
-	if left > 0 && !(count[1] == 1 && next[maxBits+1] == 1) {
-		return false
+	if left > 0 {
+		if count[1] != 1 || next[maxBits+1] != 1 {
+			return false
+		}
+		clearTo(table[:1<<tableBits])
 	}
 	var sorted [288]uint16
 	for symbol, l := range lengths {
@@ -59,25 +60,39 @@ func build(table []uint32, tableBits int, lengths []uint8, entries *[288]uint32)
 	return true
 }
 
-// fill writes the entries of the symbols, which are sorted by their codes.
+func clearTo(table []uint32) {
+	for i := range table {
+		table[i] = invalid
+	}
+}
+
+// fill writes the entries of the symbols, which are sorted by their codes. A table for codes of up to l bits is twice that for l - 1
+// bits, one after the other, with the codes of l bits put in.
 func fill(table []uint32, tableBits int, lengths []uint8, entries *[288]uint32, sorted []uint16, count *[maxBits + 1]int) {
-	code, length := 0, int(lengths[sorted[0]])
-	end := 1 << tableBits // of what is used of the table
+	code, i, size := 0, 0, 1
+	for l := 1; l <= tableBits; l++ {
+		code <<= 1
+		copy(table[size:2*size], table[:size])
+		size *= 2
+		for range count[l] {
+			table[bits.Reverse16(uint16(code))>>(16-l)] = entries[sorted[i]] + uint32(l)<<8 + uint32(l)
+			code, i = code+1, i+1
+		}
+	}
+	if i < len(sorted) {
+		fillLonger(table, tableBits, code, lengths, entries, sorted[i:], count)
+	}
+}
+
+// fillLonger writes the entries of codes that are longer than the table's bits into sub-tables, one for each beginning.
+func fillLonger(table []uint32, tableBits, code int, lengths []uint8, entries *[288]uint32, sorted []uint16, count *[maxBits + 1]int) {
+	length, end := tableBits, 1<<tableBits // what is used of the table
 	start, subBits, prefix := 0, 0, -1
 	for _, symbol := range sorted {
 		l := int(lengths[symbol])
 		code, length = code<<(l-length), l
 		reversed := int(bits.Reverse16(uint16(code)) >> (16 - l))
 		code++
-		e := entries[symbol]
-		if l <= tableBits {
-			e += uint32(l)<<8 | uint32(l)
-			for i := reversed; i < 1<<tableBits; i += 1 << l {
-				table[i] = e
-			}
-			count[l]--
-			continue
-		}
 		if p := reversed & (1<<tableBits - 1); p != prefix {
 			prefix, start = p, end
 			subBits = l - tableBits
@@ -90,7 +105,7 @@ func fill(table []uint32, tableBits int, lengths []uint8, entries *[288]uint32, 
 		}
 		count[l]--
 		rest := l - tableBits
-		e += uint32(rest)<<8 | uint32(rest)
+		e := entries[symbol] + uint32(rest)<<8 + uint32(rest)
 		for i := reversed >> tableBits; i < 1<<subBits; i += 1 << rest {
 			table[start+i] = e
 		}

@@ -7,6 +7,7 @@ import (
 	"encoding/binary"
 	"errors"
 	"hash/adler32"
+	"sync"
 )
 
 // Errors of Zlib.
@@ -23,11 +24,15 @@ const Slack = 320
 
 // A Decoder holds tables that are used again and again. The zero value is ready; it serves one goroutine at a time.
 type Decoder struct {
+	tables
+	lengths [288 + 32]uint8
+	precode [1 << precodeBits]uint32
+}
+
+// tables decode the two codes of a block.
+type tables struct {
 	literals [literalSize]uint32
 	offsets  [offsetSize]uint32
-	fixed    bool // the tables hold the fixed code
-	lengths  [288 + 32]uint8
-	precode  [1 << precodeBits]uint32
 }
 
 // Zlib undoes zlib data that holds at most len(dst) bytes and returns how many there are, and how many bytes of src were used. The
@@ -99,12 +104,8 @@ func (d *Decoder) Deflate(dst, src []byte) (n, used int, err error) {
 		case 0:
 			n, err = d.stored(&s, dst, n)
 		case 1:
-			if !d.fixed {
-				d.fixedTables()
-			}
-			n, err = d.block(&s, dst, n)
+			n, err = fixedTables().block(&s, dst, n)
 		case 2:
-			d.fixed = false
 			if err = d.dynamicTables(&s); err == nil {
 				n, err = d.block(&s, dst, n)
 			}
@@ -141,8 +142,9 @@ func (d *Decoder) stored(s *state, dst []byte, n int) (int, error) {
 	return n + size, nil
 }
 
-func (d *Decoder) fixedTables() {
-	l := d.lengths[:288]
+// fixedTables are those of the fixed codes (RFC 1951, section 3.2.6).
+var fixedTables = sync.OnceValue(func() *tables {
+	var l [288]uint8
 	for i := range l {
 		switch {
 		case i < 144:
@@ -155,14 +157,15 @@ func (d *Decoder) fixedTables() {
 			l[i] = 8
 		}
 	}
-	build(d.literals[:], literalBits, l, &literalEntries)
-	o := d.lengths[:32]
+	t := &tables{}
+	build(t.literals[:], literalBits, l[:], &literalEntries)
+	o := l[:32]
 	for i := range o {
 		o[i] = 5
 	}
-	build(d.offsets[:], offsetBits, o, &offsetEntries)
-	d.fixed = true
-}
+	build(t.offsets[:], offsetBits, o, &offsetEntries)
+	return t
+})
 
 // precodeOrder is the order in which the lengths of the code for code lengths are written (RFC 1951, section 3.2.7).
 var precodeOrder = [19]uint8{16, 17, 18, 0, 8, 7, 9, 6, 10, 5, 11, 4, 12, 3, 13, 2, 14, 1, 15}
