@@ -73,6 +73,8 @@ type spectraSummary struct {
 	LowMZ    float64        `json:"lowest_mz"`
 	HighMZ   float64        `json:"highest_mz"`
 	Highest  float64        `json:"highest"`
+	FromMZ   float64        `json:"window_low_mz,omitempty"` // scan window as stated, of the first
+	ToMZ     float64        `json:"window_high_mz,omitempty"`
 }
 
 func (v *rawView) show(w io.Writer, name string) error {
@@ -184,7 +186,7 @@ func spectraOf(scans trace.Scans) ([]spectraSummary, error) {
 		}
 		if at < 0 {
 			at = len(list)
-			list = append(list, spectraSummary{MSLevel: x.MSLevel, Polarity: x.Polarity, Mode: x.Mode, FirstID: x.ID, FromMin: x.TimeMin, ToMin: x.TimeMin})
+			list = append(list, spectraSummary{MSLevel: x.MSLevel, Polarity: x.Polarity, Mode: x.Mode, FirstID: x.ID, FromMin: x.TimeMin, ToMin: x.TimeMin, FromMZ: x.LowMZ, ToMZ: x.HighMZ})
 		}
 		s := &list[at]
 		s.LastID, s.FromMin, s.ToMin = x.ID, min(s.FromMin, x.TimeMin), max(s.ToMin, x.TimeMin)
@@ -239,10 +241,10 @@ func (s *rawSummary) print(w io.Writer) error {
 		fmt.Fprintf(t, "\t%s\n", unit)
 	}
 	if len(s.Spectra) > 0 {
-		fmt.Fprintln(t, "\nspectra\tMS level\tpolarity\tmode\tfrom min\tto min\tpoints\tlowest m/z\thighest m/z\thighest\tfirst\tlast")
+		fmt.Fprintln(t, "\nspectra\tMS level\tpolarity\tmode\tfrom min\tto min\tpoints\tlowest m/z\thighest m/z\thighest\twindow m/z\tfirst\tlast")
 	}
 	for _, x := range s.Spectra {
-		fmt.Fprintf(t, "%d\t%s\t%s\t%s\t%.4f\t%.4f\t%d\t%.4f\t%.4f\t%.6g\t%s\t%s\n", x.N, stated(float64(x.MSLevel)), x.Polarity, x.Mode, x.FromMin, x.ToMin, x.Points, x.LowMZ, x.HighMZ, x.Highest, x.FirstID, x.LastID)
+		fmt.Fprintf(t, "%d\t%s\t%s\t%s\t%.4f\t%.4f\t%d\t%.4f\t%.4f\t%.6g\t%s\t%s\t%s\n", x.N, stated(float64(x.MSLevel)), x.Polarity, x.Mode, x.FromMin, x.ToMin, x.Points, x.LowMZ, x.HighMZ, x.Highest, scanWindow(x), x.FirstID, x.LastID)
 	}
 	if len(s.StoredPeaks) > 0 {
 		fmt.Fprintln(t, "\npeak in the file\ttrace\tat min\tfrom min\tto min\tarea (unit·min)\theight")
@@ -251,6 +253,13 @@ func (s *rawSummary) print(w io.Writer) error {
 		fmt.Fprintf(t, "%s\t%s\t%.4f\t%s\t%s\t%s\t%s\n", p.Name, p.TraceID, p.RetentionMin, optional(p.StartMin, "%.4f"), optional(p.EndMin, "%.4f"), optional(p.Area, "%.6g"), optional(p.Height, "%.6g"))
 	}
 	return t.Flush()
+}
+
+func scanWindow(x spectraSummary) string {
+	if x.FromMZ == 0 && x.ToMZ == 0 {
+		return ""
+	}
+	return fmt.Sprintf("%g to %g", x.FromMZ, x.ToMZ)
 }
 
 // stated is a number, or nothing where the file does not state it.

@@ -12,16 +12,18 @@ const (
 // that the file does not say.
 type Scan struct {
 	ID          string
-	TimeMin     float64 // since injection, minutes; scans of one file never go back in time
+	TimeMin     float64 // since injection, minutes
 	MSLevel     int     // 1, 2, …; 0 where it is no mass spectrum or the file does not say
 	Polarity    Polarity
 	PrecursorMZ float64
 	Mode        Mode
 	Points      int     // in its arrays
 	TotalIon    float64 // total ion current as stated; 0 where it is not
+	LowMZ       float64 // scan window as stated
+	HighMZ      float64
 }
 
-// Scans are the spectra of one file, in the order of acquisition.
+// Scans are the spectra of one file, in its order. Several series, of two stages say, may take turns or follow each other.
 type Scans interface {
 	Len() int
 	Scan(i int) Scan

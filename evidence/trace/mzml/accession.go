@@ -24,6 +24,8 @@ const (
 	accProfile   = "MS:1000128"
 	accScanStart = "MS:1000016"
 	accTotalIon  = "MS:1000285"
+	accWindowLow = "MS:1000501" // scan window lower limit
+	accWindowTop = "MS:1000500" // scan window upper limit
 
 	accTarget   = "MS:1000827" // isolation window target m/z
 	accSelected = "MS:1000744" // selected ion m/z

@@ -23,7 +23,7 @@ type spectrum struct {
 // relevant are the terms that a spectrum is asked for; all others are passed over, for speed.
 var relevant = map[string]bool{
 	accLevel: true, accCentroid: true, accProfile: true, accScanStart: true, accTotalIon: true, accNegative: true, accPositive: true, accTarget: true, accSelected: true,
-	accZlib: true, accPlain: true,
+	accZlib: true, accPlain: true, accWindowLow: true, accWindowTop: true,
 }
 
 func init() {
@@ -92,6 +92,8 @@ func (x *spectrum) term(s *scanner, t term, holder, outer string, at int) error 
 			return s.fail(at, fmt.Sprintf("the total ion current %q in %s", t.value, where()), "a decimal number", "")
 		}
 		x.scan.TotalIon = v
+	case accWindowLow, accWindowTop:
+		return x.window(s, t, holder, where, at)
 	case accScanStart:
 		if holder == "scan" {
 			return x.startTime(s, t, where, at)
@@ -109,6 +111,23 @@ func (x *spectrum) term(s *scanner, t term, holder, outer string, at int) error 
 		}
 		return setMZ(s, slot, t.value, "precursor", where, at)
 	}
+	return nil
+}
+
+// window takes a limit of the first scan window.
+func (x *spectrum) window(s *scanner, t term, holder string, where func() string, at int) error {
+	slot := &x.scan.LowMZ
+	if t.accession == accWindowTop {
+		slot = &x.scan.HighMZ
+	}
+	if holder != "scanWindow" || *slot != 0 {
+		return nil
+	}
+	v, ok := trace.Decimal(t.value)
+	if !ok || v < 0 {
+		return s.fail(at, fmt.Sprintf("the scan window limit %q in %s", t.value, where()), "a decimal number from 0", "")
+	}
+	*slot = v
 	return nil
 }
 

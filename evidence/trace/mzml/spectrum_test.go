@@ -134,11 +134,11 @@ func spectrumOf(id string, points int, start string, arrays ...string) string {
         %s
         %s
         %s
-        <scanList count="1"><scan>%s</scan></scanList>
+        <scanList count="1"><scan>%s<scanWindowList count="1"><scanWindow>%s%s</scanWindow></scanWindowList></scan></scanList>
         <binaryDataArrayList count="%d">
 %s        </binaryDataArrayList>
       </spectrum>
-`, id, points, param(accLevel, ` value="1"`), param(accCentroid, ""), param(accPositive, ""), start, len(arrays), strings.Join(arrays, ""))
+`, id, points, param(accLevel, ` value="1"`), param(accCentroid, ""), param(accPositive, ""), start, param(accWindowLow, ` value="40"`), param(accWindowTop, ` value="450"`), len(arrays), strings.Join(arrays, ""))
 }
 
 // scanFileOf is a plain mzML file of spectra.
@@ -175,7 +175,7 @@ func TestWholeScans(t *testing.T) {
 	if err != nil || f.Scans == nil || f.Scans.Len() != 2 || len(f.Warnings) > 0 {
 		t.Fatalf("got %+v, %v", f, err)
 	}
-	want := trace.Scan{ID: "scan=2", TimeMin: 1.6, MSLevel: 1, Polarity: trace.Positive, Mode: trace.Centroid, Points: 5}
+	want := trace.Scan{ID: "scan=2", TimeMin: 1.6, MSLevel: 1, Polarity: trace.Positive, Mode: trace.Centroid, Points: 5, LowMZ: 40, HighMZ: 450}
 	if got := f.Scans.Scan(1); got != want {
 		t.Errorf("got %+v, want %+v", got, want)
 	}
@@ -202,6 +202,7 @@ func spectrumDamages(t testing.TB) []damage {
 		{"unequal_spectrum", of(mm, replaced(t, intensityArray(t, someHeights[:4]), "<binaryDataArray ", `<binaryDataArray arrayLength="4" `)), `5 m/z and 4 intensities in the spectrum "scan=1"`},
 		{"missing_scan_time_unit", change(` unitAccession="UO:0000031"`, ""), `a scan start time in the unit "" in the spectrum "scan=1"`},
 		{"bad_scan_time", change(`value="1.5"`, `value="NaN"`), `the scan start time "NaN" in the spectrum "scan=1"`},
+		{"bad_scan_window", change(param(accWindowLow, ` value="40"`), param(accWindowLow, ` value="low"`)), `the scan window limit "low" in the spectrum "scan=1"`},
 		{"bad_level", change(param(accLevel, ` value="1"`), param(accLevel, ` value="one"`)), `the MS level "one" in the spectrum "scan=1"`},
 		{"centroid_and_profile", change(param(accCentroid, ""), param(accCentroid, "")+param(accProfile, "")), `both centroid and profile in the spectrum "scan=1"`},
 		{"missing_spectrum_id", change(` id="scan=1"`, ""), "a spectrum without an id"},
