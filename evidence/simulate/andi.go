@@ -39,7 +39,7 @@ func WriteANDI(w io.Writer, run Run) error {
 	var index, count []int32
 	var mz, y []float32
 	for k, t := range run.Traces[0].TimeMin {
-		seconds, index = append(seconds, t*60), append(index, int32(len(mz)))
+		seconds, index = append(seconds, float64(t*60)), append(index, int32(len(mz)))
 		sum := 0.0
 		for _, i := range order {
 			if v := run.Traces[i].Intensity[k]; v > 0 {
