@@ -41,6 +41,7 @@ func (b *batchJudge) all() {
 	}
 	b.bracket()
 	b.recorded()
+	b.suitability()
 }
 
 func (b *batchJudge) start(name, title string, required bool, evidence ...string) Check {

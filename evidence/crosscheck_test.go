@@ -58,7 +58,9 @@ func TestCrossChecks(t *testing.T) {
 		}, []string{evidence.SameTraces, evidence.OtherStart, evidence.StartOrder}},
 		{"other instrument", func(m fstest.MapFS) { change(m, rawOf(t, m, "control", 0), "SIM-0007", "SIM-0008") }, []string{evidence.OtherInstrument}},
 		{"other software", func(m fstest.MapFS) { change(m, rawOf(t, m, "control", 0), `version="1"`, `version="2"`) }, []string{evidence.OtherSoftware}},
-		{"other day", func(m fstest.MapFS) { change(m, rawOf(t, m, "control", 0), "startTimeStamp=\"2026-03-18", "startTimeStamp=\"2026-03-19") }, []string{evidence.OtherStart, evidence.StartOrder}},
+		{"other day", func(m fstest.MapFS) {
+			change(m, rawOf(t, m, "control", 0), "startTimeStamp=\"2026-03-18", "startTimeStamp=\"2026-03-19")
+		}, []string{evidence.OtherStart, evidence.StartOrder}},
 		{"other sample", func(m fstest.MapFS) { change(m, rawOf(t, m, "sample", 1), `name="4410927"`, `name="4410972"`) }, []string{evidence.OtherCode}},
 	} {
 		m := exampleFolder(t)

@@ -50,6 +50,7 @@ func Evaluate(fsys fs.FS, folder *casefile.Folder, engine Engine) (*Evaluation, 
 		return nil, err
 	}
 	rec.CrossChecks = crossChecks(rec, ev)
+	rec.Suitability = suitability(rec)
 	for _, a := range folder.Method.Analytes {
 		if !requested(folder.Case.Request.Analytes, a.ID) {
 			continue
@@ -129,6 +130,7 @@ func steps() []Step {
 		{"peak limits", peak.DetectionAlgorithm},
 		{"area", peak.AreaAlgorithm},
 		{"choice of the peak", choiceAlgorithm},
+		{"drift over the batch", suitabilityAlgorithm},
 		{"uncertainty of an abundance", abundanceAlgorithm},
 		{"calibration", "wls-line-qr@1"},
 		{"inverse prediction", "line-inverse@1"},

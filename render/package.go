@@ -29,6 +29,9 @@ func (d *document) packageSections() []section {
 		{key: "raw-files", title: d.t("raw-files.title"), level: 1, need: 40, draw: d.rawFiles},
 		{key: "cross", title: d.t("cross.title"), level: 1, need: 20, draw: d.crossChecks},
 	}
+	if len(d.in.Record.Suitability) > 0 {
+		list = append(list, section{key: "suitability", title: d.t("suitability.title"), level: 1, need: 50, draw: d.suitability})
+	}
 	if d.hasStored() {
 		list = append(list, section{key: "stored", title: d.t("stored.title"), level: 1, need: 50, draw: d.stored})
 	}

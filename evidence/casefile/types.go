@@ -161,6 +161,8 @@ type Method struct {
 	Identification Identification  `json:"identification" key:"identification" doc:"What serves as the reference."`
 	Batch          BatchLimits     `json:"batch" key:"batch" doc:"Limits for accepting the batch."`
 
+	Suitability *SuitabilityLimits `json:"suitability,omitempty" key:"suitability,optional" doc:"Limits for the system over the batch."`
+
 	InternalStandards []InternalStandard `json:"internal_standards" key:"internal_standards" minitems:"1" doc:"Every internal standard."`
 	Analytes          []Analyte          `json:"analytes" key:"analytes" minitems:"1" doc:"Every analyte."`
 }
@@ -218,6 +220,17 @@ type BatchLimits struct {
 	InternalStandardHigh       float64 `json:"internal_standard_high" key:"internal_standard_high" unit:"fraction" min:"1" max:"100" doc:"Response over the calibrators' mean, upper limit."`
 	AliquotSpread              float64 `json:"aliquot_spread" key:"aliquot_spread" unit:"fraction" min:"0" max:"1" doc:"Relative standard deviation of the aliquots."` // relative standard deviation of the aliquots, upper limit
 	Aliquots                   int     `json:"aliquots" key:"aliquots" min:"1" doc:"Aliquots that a quantitative result needs."`                                       // aliquots that a quantitative result needs
+}
+
+// SuitabilityLimits are the method's own limits for the system; each applies where it is stated. Fractions are of 1.
+type SuitabilityLimits struct {
+	RetentionDrift *float64 `json:"retention_drift,omitempty" key:"retention_drift,optional" unit:"fraction" above:"0" max:"1" doc:"Change of retention over the batch, at most."`
+	ResponseDrift  *float64 `json:"response_drift,omitempty" key:"response_drift,optional" unit:"fraction" above:"0" max:"10" doc:"Change of the area of an internal standard over the batch, at most."`
+	ReplicateSD    *float64 `json:"replicate_relative_sd,omitempty" key:"replicate_relative_sd,optional" unit:"fraction" above:"0" max:"1" doc:"Relative standard deviation of the responses of one level, at most."`
+	Resolution     *float64 `json:"resolution,omitempty" key:"resolution,optional" above:"0" max:"20" doc:"Resolution from neighbours in the same trace, at least."`
+	SymmetryLow    *float64 `json:"symmetry_low,omitempty" key:"symmetry_low,optional" above:"0" max:"1" doc:"Symmetry factor at 5 % height, at least."`
+	SymmetryHigh   *float64 `json:"symmetry_high,omitempty" key:"symmetry_high,optional" min:"1" max:"10" doc:"Symmetry factor at 5 % height, at most."`
+	Plates         *float64 `json:"plates,omitempty" key:"plates,optional" above:"0" doc:"Plate number by the width at half height, at least."`
 }
 
 type InternalStandard struct {

@@ -32,7 +32,7 @@ func folder(files []File) fs.FS {
 
 // regressionGuard is the SHA-256 over path and content of every file, as this program first wrote them: it says that nothing has
 // changed, not that anything is right.
-const regressionGuard = "5a0400c2fc768adfa258a8fb1ce7156eceb369069bde7f79d13d54fb5af56a81"
+const regressionGuard = "e719e67ce719a3c08f533f3431788197a00df37d39ebd0386d0143428fa4a222"
 
 func TestSameBytes(t *testing.T) {
 	first, second := made(t), made(t)
