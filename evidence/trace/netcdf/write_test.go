@@ -151,6 +151,9 @@ func TestWriteAsLibrary(t *testing.T) {
 func TestNcdump(t *testing.T) {
 	program, err := exec.LookPath("ncdump")
 	if err != nil {
+		if os.Getenv("CI") != "" {
+			t.Fatal("ncdump is not installed, and nothing may be skipped here")
+		}
 		t.Skip("ncdump is not installed (Debian: netcdf-bin): not compared with the format's own library")
 	}
 	path := filepath.Join(t.TempDir(), "written.nc")
