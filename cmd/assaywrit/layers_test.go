@@ -17,6 +17,7 @@ var layers = []string{
 	"assaywrit/evidence",
 	"assaywrit/evidence/simulate/demo",
 	"assaywrit/evidence/simulate",
+	"assaywrit/evidence/draft",
 	"assaywrit/evidence/casefile",
 	"assaywrit/evidence/calibration",
 	"assaywrit/evidence/uncertainty",

@@ -37,6 +37,7 @@ It reports a measurement and the criteria applied to it. It does not say whether
 that belongs to an accredited laboratory's authorised signatory and the competent review body.`
 
 const rootExample = `  assaywrit demo                      write a worked example, build, sign and verify it
+  assaywrit new mycase                draft a case from a folder of raw files
   assaywrit check mycase              list every problem of a case folder
   assaywrit build mycase              evaluate it and write the evidence bundle
   assaywrit sign BUNDLE --person P-04 --meaning authorised --certificate P-04.pem --key P-04.key
@@ -70,7 +71,7 @@ func rootCommand(s streams) *cobra.Command {
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
 		return &failure{exitUsage, err, "see " + cmd.CommandPath() + " -h"}
 	})
-	root.AddCommand(demoCommand(s), checkCommand(s), buildCommand(s), signCommand(s), verifyCommand(s), showCommand(s),
+	root.AddCommand(demoCommand(s), newCommand(s), checkCommand(s), buildCommand(s), signCommand(s), verifyCommand(s), showCommand(s),
 		identityCommand(s), schemaCommand(s), criteriaCommand(s))
 	return root
 }

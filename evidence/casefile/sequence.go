@@ -37,12 +37,13 @@ func readSequence(file string, data []byte) ([]Injection, sequenceHeader, Proble
 		}
 		return nil, h, t.problems
 	}
-	if t.readHeader(records[0]); len(t.problems) > 0 {
+	if t.readHeader(records[0]); len(t.problems) > len(h.marked) {
 		return nil, h, t.problems
 	}
 	t.mark = t.decimalMark(records[1:])
 	var rows []Injection
 	for _, t.record = range records[1:] {
+		t.takeMarks()
 		rows = append(rows, t.row())
 	}
 	if len(rows) == 0 {
@@ -58,6 +59,7 @@ type record struct {
 	fields []string
 	places []int // columns, counting characters from 1
 	end    int   // the column after the last character
+	marked []int // the fields that are still to be filled in, by index; they are empty here
 }
 
 type sequenceReader struct {
@@ -173,7 +175,7 @@ func (t *sequenceReader) row() Injection {
 
 func (t *sequenceReader) needed(name, want string) string {
 	text, column := t.named(name)
-	if text == "" {
+	if text == "" && !t.pending(name) {
 		t.report(t.record.line, column, name, "nothing", want, "")
 	}
 	return text
@@ -182,7 +184,7 @@ func (t *sequenceReader) needed(name, want string) string {
 func (t *sequenceReader) path() string {
 	text, column := t.named("file")
 	p, err := strictyaml.ParsePath(text)
-	if err != nil {
+	if err != nil && !t.pending("file") {
 		t.report(t.record.line, column, "file", quote(text), "the path of a file inside the case folder, such as raw/010.mzML", strictyaml.PathHint(text))
 	}
 	return p
@@ -190,19 +192,24 @@ func (t *sequenceReader) path() string {
 
 func (t *sequenceReader) role() Role {
 	text, column := t.named("role")
-	if !slices.Contains(roles, Role(text)) {
-		names := make([]string, len(roles))
-		for i, r := range roles {
-			names[i] = string(r)
-		}
+	if !slices.Contains(roles, Role(text)) && !t.pending("role") {
+		names := roleNames()
 		t.report(t.record.line, column, "role", quote(text), "one of: "+strings.Join(names, ", "), strictyaml.Suggest(text, names))
 	}
 	return Role(text)
 }
 
+func roleNames() []string {
+	names := make([]string, len(roles))
+	for i, r := range roles {
+		names[i] = string(r)
+	}
+	return names
+}
+
 func (t *sequenceReader) time() string {
 	text, column := t.named("acquired")
-	if _, err := strictyaml.ParseTime(text); err != nil {
+	if _, err := strictyaml.ParseTime(text); err != nil && !t.pending("acquired") {
 		hint := "spreadsheet programs change times: format the column as text before typing"
 		if h := strictyaml.TimeHint(text); h != "" {
 			hint = h + "; " + hint

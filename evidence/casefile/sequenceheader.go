@@ -23,6 +23,7 @@ type sequenceHeader struct {
 	places  map[string]int // column in the header line, by name; nominal amounts as "nominal analyte"
 	nominal []nominalColumn
 	names   []string // as written
+	marked  []int    // columns whose name is still to be filled in, by index
 }
 
 type nominalColumn struct {
@@ -47,6 +48,9 @@ func (t *sequenceReader) readHeader(header record) {
 		bad := func(got, want, hint string) { t.report(header.line, header.places[i], name, got, want, hint) }
 		m := nominalName.FindStringSubmatch(name)
 		switch {
+		case strictyaml.IsMark(name):
+			h.marked = append(h.marked, i)
+			t.report(header.line, header.places[i], "header", strictyaml.MarkFound, columnWanted, "")
 		case m != nil:
 			t.nominalColumn(nominalColumn{i, strings.ToLower(m[1]), m[2]}, header.places[i], bad)
 		case strings.HasPrefix(key, "nominal"):
@@ -61,7 +65,7 @@ func (t *sequenceReader) readHeader(header record) {
 		}
 	}
 	for _, name := range requiredColumns {
-		if _, ok := h.columns[name]; !ok {
+		if _, ok := h.columns[name]; !ok && len(h.marked) == 0 {
 			t.report(header.line, 1, name, "no such column", "a column "+name, "")
 		}
 	}

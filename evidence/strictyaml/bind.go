@@ -63,6 +63,10 @@ func (b *binder) value(n *yaml.Node, key string, f field, v reflect.Value, depth
 	if !b.plain(n, key) {
 		return
 	}
+	if n.Kind == yaml.ScalarNode && IsMark(n.Value) {
+		b.report(n, key, MarkFound, describe(f), "")
+		return
+	}
 	if v.Kind() == reflect.Pointer {
 		v.Set(reflect.New(v.Type().Elem()))
 		v = v.Elem()

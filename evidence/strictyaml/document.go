@@ -19,6 +19,8 @@
 // keys, empty values, anchors, aliases, merge keys, tags, second documents and characters that do not show are refused, and every
 // problem is reported with its place, all at once. What Bind accepts, the schema accepts too; limits of quantities, days of the
 // calendar and rules between keys are beyond the schema.
+//
+// A file may be begun with Mark in the place of what is still to be filled in; Template writes such a file.
 package strictyaml
 
 import (
