@@ -34,6 +34,7 @@ func (j *judge) manual() {
 		"No peak was integrated by hand.", fmt.Sprintf("%s integrated by hand; the automatic results stand beside them.", were(len(all), "peak")))
 	j.raise("manual-integration/controls", "Integrations set by hand on calibrators, controls and blanks", "integrations set by hand on calibrators and controls are raised", others,
 		"No calibrator, control or blank was integrated by hand.", fmt.Sprintf("%s integrated by hand in calibrators, controls or blanks.", were(len(others), "peak")))
+	j.direction()
 	c := j.startCase("manual-integration/approved", "Integrations set by hand approved by another person", true, unapproved...).custom("a second person approves what is set by hand")
 	if len(all)+len(j.rec.Case.Manual) == 0 {
 		c.Evidence = []string{"/injections"}
@@ -45,6 +46,42 @@ func (j *judge) manual() {
 		c.Evidence = all
 	}
 	j.add(c.says("Each integration set by hand was approved by another person.", fmt.Sprintf("%s integrated by hand without the approval of another person.", were(len(unapproved), "peak"))))
+}
+
+// oneWay is how many integrations set by hand, all changing areas the same way, are raised: by chance alone three of three are one case
+// in four, five of five one in sixteen.
+const oneWay = 3
+
+// direction raises changes of area that all go one way: peaks of calibrators and controls made smaller, or larger, throughout. Such
+// changes move the line, or the controls, to where they are wanted.
+func (j *judge) direction() {
+	var smaller, larger []string
+	for i, inj := range j.rec.Injections {
+		if inj.Role == casefile.SampleAliquot {
+			continue
+		}
+		for k, m := range inj.Measurements {
+			if m.Manual == nil || m.Manual.AreaChange == nil || *m.Manual.AreaChange == 0 {
+				continue
+			}
+			at := fmt.Sprintf("/injections/%d/measurements/%d/manual/area_change", i, k)
+			if *m.Manual.AreaChange < 0 {
+				smaller = append(smaller, at)
+			} else {
+				larger = append(larger, at)
+			}
+		}
+	}
+	found, way := smaller, "smaller"
+	if len(larger) > len(smaller) {
+		found, way = larger, "larger"
+	}
+	if len(found) < oneWay || len(smaller) > 0 && len(larger) > 0 {
+		found = nil
+	}
+	j.raise("manual-integration/direction", "Integrations set by hand that all go one way", "systematic shaving or enhancing of peaks is raised", found,
+		"No three or more integrations set by hand on calibrators, controls or blanks change areas the same way without another that does not.",
+		fmt.Sprintf("All %d integrations set by hand on calibrators, controls and blanks made the area %s.", len(found), way))
 }
 
 func approved(by, approver string) bool { return by != "" && approver != "" && by != approver }
