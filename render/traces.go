@@ -169,6 +169,22 @@ func (d *document) peakTable(list []*evidence.Measurement) {
 		return
 	}
 	d.table(table{name: "peaks", columns: "lllrrrdddrl", rows: rows, size: peakSize})
+	if units := unitsOf(list); units != "" {
+		d.note(d.t("peaks.units", "units", units))
+	}
+}
+
+// unitsOf names the units of the traces' intensities that are not counts.
+func unitsOf(list []*evidence.Measurement) string {
+	text := ""
+	seen := map[string]bool{}
+	for _, m := range list {
+		if m.Unit != "" && m.Peak != nil && !seen[m.Unit] {
+			seen[m.Unit] = true
+			text = joined(", ", text, m.Unit)
+		}
+	}
+	return text
 }
 
 const peakSize = 7.0
