@@ -50,7 +50,7 @@ func (j *judge) agreement(name, title string, required bool, rule, passed string
 }
 
 // Faults of a recorded peak: with these its area is not what was there.
-var peakFaults = []string{peak.FlagSaturated, peak.FlagCutAtStart, peak.FlagCutAtEnd, evidence.GapInPeak}
+var peakFaults = []string{peak.FlagSaturated, peak.FlagCutAtStart, peak.FlagCutAtEnd, evidence.GapInPeak, evidence.NotDivided}
 
 // recorded: the peaks that an analyte's result rests on were recorded as a whole, in the sample, the calibrators and the controls.
 func (b *batchJudge) recorded() {

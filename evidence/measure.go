@@ -84,7 +84,7 @@ func (m *measurer) measure(compound, which string, t casefile.Transition, expect
 		m.err = err
 		return nil
 	}
-	p := m.rec.Method.Integration
+	p := m.rec.Method.Integration.Parameters
 	found, err := peak.Detect(c, p)
 	if err != nil {
 		m.err = fmt.Errorf("%s: trace %q (%s): %w", m.row.File, c.ID, what, err)
@@ -96,12 +96,20 @@ func (m *measurer) measure(compound, which string, t casefile.Transition, expect
 		WindowStartMin: expected - window, WindowEndMin: expected + window, Choice: choiceAlgorithm, Noise: found.Noise,
 	}
 	mt.Peak, mt.Others = choose(found.Peaks, mt.WindowStartMin, mt.WindowEndMin, target)
+	if err := divide(&mt, c, found, m.rec.Method.Integration.Fused); err != nil {
+		m.err = fmt.Errorf("%s: trace %q (%s): %w", m.row.File, c.ID, what, err)
+		return nil
+	}
 	if err := m.applyManual(&mt, c); err != nil {
 		m.err = err
 		return nil
 	}
+	if mt.Merit, err = meritOf(c, found, mt.Peak, m.rec); err != nil {
+		m.err = fmt.Errorf("%s: trace %q (%s): %w", m.row.File, c.ID, what, err)
+		return nil
+	}
 	mt.Stored = storedMatch(m.inj.StoredPeaks, &mt)
-	mt.Warnings = traceWarnings(c, &mt)
+	mt.Warnings = append(traceWarnings(c, &mt), mt.Division.warnings()...)
 	m.done = append(m.done, mt)
 	m.used = append(m.used, c)
 	return mt.Peak

@@ -93,6 +93,9 @@ type Measurement struct {
 	Manual    *ManualAction `json:"manual,omitempty"`
 	Others    []peak.Peak   `json:"other_peaks,omitempty"` // found in the trace and not used
 
+	Division *Division `json:"division,omitempty"` // where the method divides peaks by fitting, and the peak in use shares a baseline
+	Merit    *Merit    `json:"merit,omitempty"`    // of the peak in use
+
 	Stored   *StoredMatch    `json:"stored_peak,omitempty"` // the instrument's own peak at this place
 	Spectrum *PeakSpectrum   `json:"spectrum,omitempty"`
 	Warnings []trace.Warning `json:"warnings,omitempty"` // about this trace

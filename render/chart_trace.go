@@ -111,10 +111,41 @@ func (c *traceChart) draw() {
 	for _, p := range c.other {
 		c.limits(p, soft, true)
 	}
+	c.curves()
 	if c.used != nil {
 		c.limits(c.used, accent, false)
 	}
 	c.foot(largest, len(pt), rec.TimeMin)
+}
+
+// curves draws what was fitted to peaks that share a baseline: each curve on the fitted line, the one in use whole, others dashed.
+func (c *traceChart) curves() {
+	v := c.m.Division
+	if v == nil || v.Fit == nil || c.m.Manual != nil {
+		return
+	}
+	d, line := c.d, v.Fit.Baseline
+	from, to := max(line.StartMin, c.span.from), min(line.EndMin, c.span.to)
+	if from >= to {
+		return
+	}
+	const steps = 160
+	for i, p := range v.Fit.Peaks {
+		pattern := dash{1.6, 1.4}
+		if i == v.Index {
+			pattern = whole
+		}
+		d.setLine(accent, 0.6, pattern)
+		for k := range steps + 1 {
+			t := from + (to-from)*float64(k)/steps
+			op := "l\n"
+			if k == 0 {
+				op = "m\n"
+			}
+			d.point(c.xs.at(t), c.vs.at(line.At(t)+p.At(t)), op)
+		}
+		d.op("S\n")
+	}
 }
 
 // foot states the scale and how many points are drawn.

@@ -115,6 +115,9 @@ func (d *document) parameters() {
 	if p.ValleyFraction == 0 {
 		shared.cells[1].text = d.t("parameter.shared-always", "kind", d.words.or("shared.", string(p.Shared)))
 	}
+	if p.Fused != "" {
+		shared.cells[1].text = d.words.or("fused.", string(p.Fused))
+	}
 	d.table(table{name: "parameters", columns: "lw", rows: []row{
 		{over: d.t("parameter.integration")},
 		say("smoothing", "n", itoa(p.SmoothingPoints)),

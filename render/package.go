@@ -73,6 +73,9 @@ func (d *document) analyteSections(k int) []section {
 		{key: "analyte/" + a.ID, title: a.Name, draw: func() { d.analyteOutcome(k) }},
 		{key: "identity/" + a.ID, title: d.t("identity.title"), level: 1, need: 60, draw: func() { d.identity(k) }},
 	}
+	if d.hasMerit(a.ID) {
+		list = append(list, section{key: "merit/" + a.ID, title: d.t("merit.title"), level: 1, need: 60, draw: func() { d.merit(k) }})
+	}
 	if d.hasSpectra(a.ID) {
 		list = append(list, section{key: "spectra/" + a.ID, title: d.t("spectra.title"), level: 1, need: 110, draw: func() { d.spectra(k) }})
 	}

@@ -88,6 +88,9 @@ func (d *document) aliquotTraces(inj *evidence.Injection) {
 		s := spanOf(list)
 		const gap, perPage = 6.0, 4
 		w, h := (textW-gap)/2, 86.0
+		if alternativeRoom(inj) > 0 {
+			h -= 6 // for the table below
+		}
 		for i, m := range list {
 			if i > 0 && i%perPage == 0 {
 				d.newPage()
@@ -99,6 +102,7 @@ func (d *document) aliquotTraces(inj *evidence.Injection) {
 		}
 		d.down(h + 6)
 		d.peakTable(list)
+		d.alternativeTable(list)
 	}
 }
 
@@ -131,6 +135,7 @@ func (d *document) injectionTraces(inj *evidence.Injection) {
 	}
 	d.down(3)
 	d.peakTable(all)
+	d.alternativeTable(all)
 }
 
 // gridHeight is the height of a row of small charts: all rows and the table of peaks fit the page, if they can.
@@ -140,7 +145,7 @@ func (d *document) gridHeight(inj *evidence.Injection, columns int) float64 {
 		n := len(d.tracesOf(inj, a.ID))
 		rows, traces = rows+(n+columns-1)/columns, traces+n
 	}
-	return min(68, max(42, (lowest-d.y-peakRoom(traces)-4)/float64(max(1, rows))-4.8))
+	return min(68, max(42, (lowest-d.y-peakRoom(traces)-alternativeRoom(inj)-4)/float64(max(1, rows))-4.8))
 }
 
 // peakTable gives limits and figures of merit of the peaks that were used.

@@ -40,7 +40,7 @@ func TestLoad(t *testing.T) {
 		{"appearance is absent", f.Case.Sample.Appearance, ""},
 		{"void time", f.Method.Instrument.VoidTimeMin, value(0.5)},
 		{"flow is absent", f.Method.Instrument.FlowMLPerMin, (*float64)(nil)},
-		{"integration", f.Method.Integration, peak.Parameters{SmoothingPoints: 9, MinSN: 3, MinWidthMin: 0.02, Shared: peak.Drop}},
+		{"integration", f.Method.Integration.Parameters, peak.Parameters{SmoothingPoints: 9, MinSN: 3, MinWidthMin: 0.02, Shared: peak.Drop}},
 		{"quantifier", f.Method.Analytes[0].Quantifier, Transition{Transition: trace.Transition{PrecursorMZ: 240.2, ProductMZ: 148.1}}},
 		{"component", f.Method.Analytes[0].Uncertainty.Components[0].Relative, value(0.04)},
 		{"limit", f.Method.Batch.InternalStandardHigh, 1.5},

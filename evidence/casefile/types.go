@@ -157,9 +157,9 @@ type Method struct {
 
 	Tables []TableLayout `json:"tables,omitempty" key:"tables,optional" doc:"How delimited text files are laid out."` // how delimited text files are laid out
 
-	Integration    peak.Parameters `json:"integration" key:"integration" doc:"How peaks are found and integrated."`
-	Identification Identification  `json:"identification" key:"identification" doc:"What serves as the reference."`
-	Batch          BatchLimits     `json:"batch" key:"batch" doc:"Limits for accepting the batch."`
+	Integration    Integration    `json:"integration" key:"integration" doc:"How peaks are found and integrated."`
+	Identification Identification `json:"identification" key:"identification" doc:"What serves as the reference."`
+	Batch          BatchLimits    `json:"batch" key:"batch" doc:"Limits for accepting the batch."`
 
 	Suitability *SuitabilityLimits `json:"suitability,omitempty" key:"suitability,optional" doc:"Limits for the system over the batch."`
 
@@ -178,6 +178,20 @@ type Instrument struct {
 	VoidTimeMin       *float64 `json:"void_time_min,omitempty" key:"void_time,optional" unit:"min" above:"0" doc:"Hold-up time of the column."`
 	Ionisation        string   `json:"ionisation,omitempty" key:"ionisation,optional" doc:"Ion source and polarity."`
 }
+
+// Integration says how peaks are found and integrated.
+type Integration struct {
+	peak.Parameters
+	Fused Fused `json:"fused_peaks,omitempty" key:"fused_peaks,optional" enum:"joint-fit|joint-fit-one-shape" doc:"How peaks on a common baseline are divided, instead of shared_valley: by curves fitted to all of them at once."`
+}
+
+// Fused is a way to divide peaks on a common baseline by fitting curves (exponentially modified Gaussians).
+type Fused string
+
+const (
+	JointFit         Fused = "joint-fit"           // each peak with a shape of its own
+	JointFitOneShape Fused = "joint-fit-one-shape" // one shape for all peaks of a cluster
+)
 
 // A TableLayout declares the columns of delimited text files whose path matches Files.
 type TableLayout struct {
