@@ -21,6 +21,7 @@ var layers = []string{
 	"assaywrit/evidence/casefile",
 	"assaywrit/evidence/calibration",
 	"assaywrit/evidence/uncertainty",
+	"assaywrit/evidence/separation",
 	"assaywrit/evidence/peak",
 	"assaywrit/evidence/trace/formats",
 	"assaywrit/evidence/trace/fullscan",
