@@ -49,6 +49,11 @@ func Evaluate(fsys fs.FS, folder *casefile.Folder, engine Engine) (*Evaluation, 
 	if err := ev.readInjections(fsys); err != nil {
 		return nil, err
 	}
+	if folder.Study != nil {
+		if rec.Separation, err = Scout(fsys, folder.Case.Study, folder.Study); err != nil {
+			return nil, err
+		}
+	}
 	rec.CrossChecks = crossChecks(rec, ev)
 	rec.Suitability = suitability(rec)
 	for _, a := range folder.Method.Analytes {

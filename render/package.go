@@ -23,12 +23,17 @@ func (d *document) packageSections() []section {
 		{key: "transitions", title: d.t("transitions.title"), level: 1, need: 40, draw: d.transitions},
 		{key: "parameters", title: d.t("parameters.title"), level: 1, need: 40, draw: d.parameters},
 		{key: "algorithms", title: d.t("algorithms.title"), level: 1, need: 30, draw: d.algorithms},
+	}
+	if d.in.Record.Separation != nil {
+		list = append(list, section{key: "study", title: d.t("study.title"), level: 1, fresh: true, draw: d.study})
+	}
+	list = append(list, []section{
 		{key: "criteria", title: d.t("criteria.title"), draw: d.criteria},
 		{key: "batch", title: d.t("batch.title"), draw: d.sequence},
 		{key: "batch-checks", title: d.t("batch-checks.title"), level: 1, need: 60, draw: d.batchAtAGlance},
 		{key: "raw-files", title: d.t("raw-files.title"), level: 1, need: 40, draw: d.rawFiles},
 		{key: "cross", title: d.t("cross.title"), level: 1, need: 20, draw: d.crossChecks},
-	}
+	}...)
 	if len(d.in.Record.Suitability) > 0 {
 		list = append(list, section{key: "suitability", title: d.t("suitability.title"), level: 1, need: 50, draw: d.suitability})
 	}

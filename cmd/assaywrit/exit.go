@@ -8,6 +8,7 @@ import (
 
 	"assaywrit/evidence/casefile"
 	"assaywrit/evidence/peak"
+	"assaywrit/evidence/separation"
 	"assaywrit/evidence/strictyaml"
 	"assaywrit/evidence/trace"
 )
@@ -59,7 +60,8 @@ func isInput(err error) bool {
 	var interval *peak.IntervalError
 	var points *peak.TraceError
 	var parameter *peak.ParameterError
-	return errors.As(err, &problem) || errors.As(err, &problems) || errors.As(err, &syntax) || errors.As(err, &interval) || errors.As(err, &points) || errors.As(err, &parameter)
+	var runs *separation.Error
+	return errors.As(err, &runs) || errors.As(err, &problem) || errors.As(err, &problems) || errors.As(err, &syntax) || errors.As(err, &interval) || errors.As(err, &points) || errors.As(err, &parameter)
 }
 
 // report prints an error, each of its parts as cause and advice on two lines.

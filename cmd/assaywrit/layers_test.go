@@ -20,6 +20,7 @@ var layers = []string{
 	"assaywrit/evidence/draft",
 	"assaywrit/evidence/casefile",
 	"assaywrit/evidence/calibration",
+	"assaywrit/evidence/validation",
 	"assaywrit/evidence/uncertainty",
 	"assaywrit/evidence/separation",
 	"assaywrit/evidence/peak",

@@ -96,12 +96,18 @@ func (l *loader) checkFiles() {
 		}
 		known[row.File] = true
 	}
+	if c.Study != "" {
+		known[c.Study] = true
+	}
+	for _, f := range l.folder.StudyFiles() {
+		known[f] = true
+	}
 	for _, a := range l.folder.Method.Analytes {
 		if a.Spectrum != nil && a.Spectrum.Reference != nil {
 			known[a.Spectrum.Reference.File] = true
 		}
 	}
-	if !l.caseWhole || !l.sequenceWhole || l.methodDoc != nil && !l.methodWhole {
+	if !l.caseWhole || !l.sequenceWhole || c.Study != "" && l.folder.Study == nil || l.methodDoc != nil && !l.methodWhole {
 		return // what they name is not known as a whole
 	}
 	for _, p := range l.present {

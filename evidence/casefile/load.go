@@ -80,6 +80,9 @@ func (l *loader) readAll() error {
 		l.problems = append(l.problems, problems...)
 		l.methodWhole = len(problems) == 0
 	}
+	if err := l.readStudy(); err != nil {
+		return err
+	}
 	if data, err = l.read("sequence", l.folder.Case.SequenceFile); err != nil {
 		return err
 	}

@@ -11,7 +11,7 @@ import (
 )
 
 // SchemaNames lists the kinds of files, or parts of them, that have a JSON Schema.
-func SchemaNames() []string { return []string{"case", "method", "sequence", "custody"} }
+func SchemaNames() []string { return []string{"case", "method", "sequence", "custody", "study"} }
 
 // SchemaJSON returns the JSON Schema of one of SchemaNames. That of the sequence describes the table as an array of objects, one a
 // row, with the names of the columns as keys.
@@ -28,6 +28,8 @@ func SchemaJSON(name string) ([]byte, error) {
 			return nil, err
 		}
 		return withNumbers(s)
+	case "study":
+		return strictyaml.Schema(id, "A separation study (study.yaml)", Study{})
 	case "custody":
 		return strictyaml.Schema(id, "Custody events (the list custody of case.yaml)", []CustodyEvent{})
 	}

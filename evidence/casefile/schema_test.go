@@ -88,16 +88,16 @@ func table(t testing.TB, text string) []any {
 func TestSchemasAcceptTheSmallCase(t *testing.T) {
 	c := generic(t, smallCase)
 	for name, v := range map[string]any{
-		"case": c, "method": generic(t, smallMethod), "sequence": table(t, smallSequence), "custody": c.(map[string]any)["custody"],
+		"case": c, "method": generic(t, smallMethod), "sequence": table(t, smallSequence), "custody": c.(map[string]any)["custody"], "study": generic(t, smallStudy),
 	} {
 		if err := schema(t, name).Validate(v); err != nil {
 			t.Errorf("%s: %v", name, err)
 		}
 	}
-	if got := SchemaNames(); !reflect.DeepEqual(got, []string{"case", "method", "sequence", "custody"}) {
+	if got := SchemaNames(); !reflect.DeepEqual(got, []string{"case", "method", "sequence", "custody", "study"}) {
 		t.Errorf("names %q", got)
 	}
-	if _, err := SchemaJSON("letter"); err == nil || !strings.Contains(err.Error(), "case, method, sequence, custody") {
+	if _, err := SchemaJSON("letter"); err == nil || !strings.Contains(err.Error(), "case, method, sequence, custody, study") {
 		t.Errorf("a schema that there is not: %v", err)
 	}
 }

@@ -1,6 +1,9 @@
 // Package uncertainty combines standard uncertainties into a budget (JCGM 100:2008, the GUM).
 //
-// Components are in the unit of the result. All arithmetic is bit-reproducible (package strictmath).
+// Combine adds independent components that are in the unit of the result. Propagate starts from a measurement model and its inputs, with
+// correlations and, where asked for, terms of second order. Simulate propagates distributions through the same model (JCGM 101:2008) and
+// Compare says which of the two is to be used. CheckOverlap finds what a budget counts twice; Bias is the top-down figure for what a
+// method is off. Units are the caller's. All arithmetic is bit-reproducible (package strictmath); the models must be too.
 package uncertainty
 
 // A Component is one input of a budget.
