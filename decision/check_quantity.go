@@ -15,6 +15,7 @@ func (b *batchJudge) quantity(rule *LimitRule) {
 	b.dilution()
 	b.result()
 	b.maxUncertainty(rule)
+	b.confirmation()
 }
 
 func (b *batchJudge) startQuantity(name, title string, evidence ...string) Check {

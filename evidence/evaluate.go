@@ -12,6 +12,7 @@ import (
 	"assaywrit/evidence/casefile"
 	"assaywrit/evidence/peak"
 	"assaywrit/evidence/trace"
+	"assaywrit/evidence/uncertainty"
 )
 
 // An Evaluation is the evidence record and the traces behind it, kept for drawing.
@@ -144,5 +145,6 @@ func steps() []Step {
 		{"calibration", "wls-line-qr@1"},
 		{"inverse prediction", "line-inverse@1"},
 		{"uncertainty budget", "gum-first-order@1"},
+		{"confirmation of the budget", uncertainty.PropagateAlgorithm + ", " + uncertainty.MonteCarloAlgorithm + " (" + uncertainty.GeneratorName + "), " + uncertainty.ComparisonAlgorithm},
 	}
 }

@@ -130,6 +130,11 @@ func result(a casefile.Analyte, cal *Calibration, aliquots []Concentration) (*Re
 	if err != nil {
 		return nil, err
 	}
-	r.Budget, err = uncertainty.Combine(r.NGPerML, parts)
-	return r, err
+	if r.Budget, err = uncertainty.Combine(r.NGPerML, parts); err != nil {
+		return nil, err
+	}
+	if r.Confirmation, err = confirm(a, &cal.Fit, r, aliquots[0].Dilution); err != nil {
+		r.NoConfirmation = err.Error()
+	}
+	return r, nil
 }

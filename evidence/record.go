@@ -278,4 +278,7 @@ type Result struct {
 	RSD        *float64               `json:"relative_sd,omitempty"`
 	Prediction calibration.Prediction `json:"prediction"` // of the mean response, before dilution
 	Budget     uncertainty.Budget     `json:"budget"`
+
+	Confirmation   *Confirmation `json:"confirmation,omitempty"` // of the budget, by the measurement model and a simulation
+	NoConfirmation string        `json:"no_confirmation,omitempty"`
 }

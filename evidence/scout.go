@@ -152,6 +152,11 @@ func choosePeaks(name string, peaks []peak.Peak, r casefile.StudyRun, study *cas
 			return &trace.SyntaxError{File: name, Got: fmt.Sprintf("a peak at %.3f min without a width at half height", p.ApexMin), Want: "peaks that can be measured",
 				Hint: "a neighbour hides it: name the peaks of the study, or leave the run out"}
 		}
+		for _, f := range p.Flags {
+			if f == peak.FlagSaturated || f == peak.FlagCutAtStart || f == peak.FlagCutAtEnd {
+				return &trace.SyntaxError{File: name, Got: fmt.Sprintf("a peak at %.3f min that is flagged %s", p.ApexMin, f), Want: "peaks that were recorded as a whole", Hint: "inject less, or record longer"}
+			}
+		}
 		taken[i] = true
 		run.Peaks = append(run.Peaks, separation.Peak{Compound: compound, RetentionMin: p.ApexMin, WidthHalfMin: *p.WidthHalfMin, Area: p.Area})
 		scouted.Peaks = append(scouted.Peaks, p)

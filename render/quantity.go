@@ -1,7 +1,11 @@
 package render
 
 import (
+	"fmt"
+
 	"assaywrit/decision"
+	"assaywrit/evidence"
+	"assaywrit/evidence/uncertainty"
 )
 
 func (d *document) calibration(k int) {
@@ -77,6 +81,33 @@ func (d *document) budget(k int) {
 	d.table(table{name: "budget", columns: "wldddddw", rows: rows})
 	d.budgetBars(b, "ng/mL")
 	d.note(d.t("budget.note"))
+	d.confirmation(d.in.Record.Analytes[k].Result)
+}
+
+// confirmation sets the budget beside the simulation of the same measurement model.
+func (d *document) confirmation(r *evidence.Result) {
+	c := r.Confirmation
+	if c == nil {
+		if r.NoConfirmation != "" {
+			d.note(d.t("budget.not-confirmed", "why", r.NoConfirmation))
+		}
+		return
+	}
+	rows := []row{{cells: cells(d.t("budget.propagated"), number(c.Propagation.Value, 5), number(c.Propagation.StdU, 3), interval(c.Comparison.Propagated))},
+		{cells: cells(d.t("budget.simulated", "n", itoa(c.Simulation.Trials), "generator", c.Simulation.Generator, "seed", fmt.Sprint(c.Simulation.Seed)), number(c.Simulation.Mean, 5), number(c.Simulation.StdU, 3), interval(&c.Simulation.Symmetric))}}
+	d.table(table{name: "confirmation", columns: "wddl", rows: rows})
+	key := "budget.agree"
+	if c.Comparison.Use != uncertainty.UseFirstOrder {
+		key = "budget.differ"
+	}
+	d.note(d.t("budget.model", "model", c.Model) + " " + d.t(key, "tolerance", number(c.Comparison.Tolerance, 2)))
+}
+
+func interval(c *uncertainty.Coverage) string {
+	if c == nil {
+		return missing
+	}
+	return number(c.Low, 5) + " – " + number(c.High, 5)
 }
 
 func (d *document) decision(k int) {

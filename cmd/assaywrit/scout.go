@@ -108,7 +108,7 @@ func printStudy(w io.Writer, s *evidence.SeparationStudy) error {
 	if b := r.Best; b != nil {
 		fmt.Fprintf(w, "\nrecommended: %s; critical pair %s and %s, resolution %.2f; last peak ends at %.2f min\n", compositionText(r, b.At), b.First, b.Second, b.Resolution, b.LastMin)
 		if b.Holds {
-			fmt.Fprintf(w, "resolution of at least %g from %s to %s, within the study\n", s.Study.Limits.Resolution, compositionText(r, b.LowTolerated), compositionText(r, b.HighTolerated))
+			fmt.Fprintf(w, "resolution of at least %g, within the limits, from %s to %s\n", s.Study.Limits.Resolution, compositionText(r, b.LowTolerated), compositionText(r, b.HighTolerated))
 		}
 		for _, p := range b.Predicted {
 			fmt.Fprintf(w, "  %-16s %8.3f min%s\n", p.Compound, p.RetentionMin, nextResolution(p))

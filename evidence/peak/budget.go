@@ -28,10 +28,10 @@ type AreaBudget struct {
 // sum of the squares of the weights times the variance of each point by the noise model.
 //
 // Limits: a limit that stands where the flank has fallen to h above the baseline leaves an area of about h·r/ln 2 outside, where r is
-// the time in which the flank falls by half, and lifts the baseline by h, which takes h/2 times the length of the peak; the second
-// belongs to both only as far as the points that fix the baseline are still on the flank. h is taken as a rectangular distribution from
-// 0 to twice what limits are followed to: a tenth of the noise or 2^-13 of the height, whichever is larger, and for an end at a
-// valley nothing is added, for what lies behind it is another peak. Divided by √3.
+// the time in which the flank falls by half, and lifts that end of the baseline by up to h, which takes up to h/2 times the length of the
+// peak. h is what limits are followed to, a tenth of the noise or 2^-13 of the height, whichever is larger; the two areas together are
+// the half width of a rectangular distribution, divided by √3. For an end at a valley nothing is added: what lies behind it is another
+// peak, and how to divide from that is not noise.
 //
 // The noise model should be that of the trace. The error is a *TraceError, an *IntervalError for a peak that is not one of this trace, or
 // a *ParameterError. What this cannot know is left out: a wrong shape of baseline, and peaks underneath.

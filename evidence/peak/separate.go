@@ -24,12 +24,12 @@ type Separation struct {
 
 // Reasons why a method does not apply.
 const (
-	RefusedOnePeak     = "one-peak"        // there is nothing to share
-	RefusedNoValley    = "no-valley"       // two apexes have no lower point between them
-	RefusedNoRider     = "no-rider"        // no peak follows the tallest
-	RefusedNoTail      = "tail-too-short"  // less than five points of falling tail lie between the tallest peak and its rider
-	RefusedNoFit       = "no-fit"          // the joint fit found nothing
-	RefusedNotPositive = "area-not-above0" // a peak would get an area that is not above zero
+	RefusedOnePeak     = "one-peak"            // there is nothing to share
+	RefusedNoValley    = "no-valley"           // two apexes have no lower point between them
+	RefusedNoRider     = "no-rider"            // no peak follows the tallest
+	RefusedNoTail      = "tail-too-short"      // less than five points of falling tail lie between the tallest peak and its rider
+	RefusedNoFit       = "no-fit"              // the joint fit found nothing
+	RefusedNotPositive = "area-not-above-zero" // a peak would get an area that is not above zero
 )
 
 // Separate shares the area of a cluster by every method, side by side, so that what another choice would have given is seen. The

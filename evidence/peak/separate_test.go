@@ -53,6 +53,9 @@ func madePair(one, two emg, window [2]float64, step, noise float64, seed uint64)
 // closed form for the perpendicular drop of Gaussians. Truth: the areas that the curves were made with. Mean error and, behind the
 // sign, root mean square over the seeds, in per cent of the smaller and of the larger area.
 func TestFusedPairs(t *testing.T) {
+	if testing.Short() {
+		t.Skip("3,000 pairs, each in six ways")
+	}
 	const seeds = 60
 	for _, shape := range []struct{ sigma, tau float64 }{{1, 0}, {1, 0.5}, {1, 1}} {
 		for _, rs := range []float64{0.8, 1, 1.5} {

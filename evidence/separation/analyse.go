@@ -12,6 +12,9 @@ func Analyse(runs []Run, limits Limits) (*Result, error) {
 	if err := checkRuns(runs); err != nil {
 		return nil, err
 	}
+	if err := limits.check(); err != nil {
+		return nil, err
+	}
 	how, compounds, err := track(runs)
 	if err != nil {
 		return nil, err
@@ -19,6 +22,9 @@ func Analyse(runs []Run, limits Limits) (*Result, error) {
 	r := &Result{Algorithm: "isocratic", Tracking: how, Compounds: compounds, Gradients: runs[0].Gradient != nil, VoidMin: runs[0].VoidMin, runs: runs}
 	if r.Gradients {
 		r.Algorithm = "gradient"
+		if limits.MinK > 0 || limits.MaxK > 0 {
+			r.Remarks = append(r.Remarks, "limits of the retention factor are left aside: they are for isocratic runs")
+		}
 	}
 	r.LowStudied, r.HighStudied = math.Inf(1), math.Inf(-1)
 	for _, x := range runs {
@@ -31,6 +37,18 @@ func Analyse(runs []Run, limits Limits) (*Result, error) {
 	}
 	r.scan(limits)
 	return r, nil
+}
+
+func (l Limits) check() error {
+	for _, v := range []float64{l.TimeMin, l.Resolution, l.MinK, l.MaxK} {
+		if !(v >= 0) || math.IsInf(v, 0) {
+			return &Error{"", fmt.Sprintf("a limit of %g", v), "limits of 0 (none) or more"}
+		}
+	}
+	if l.MaxK > 0 && l.MaxK <= l.MinK {
+		return &Error{"", fmt.Sprintf("retention factors from %g to %g", l.MinK, l.MaxK), "a largest above the smallest"}
+	}
+	return nil
 }
 
 // at is what is varied: φ, or the time of the gradient.

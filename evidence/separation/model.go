@@ -24,6 +24,9 @@ type Model struct {
 	SStdU     *float64 `json:"s_std_u,omitempty"`
 	Residual  *float64 `json:"residual_sd,omitempty"` // of log10 k, or of retention in minutes for gradients; with degrees of freedom left
 	F         *float64 `json:"f_parabola,omitempty"`  // variance that the parabola takes away, over that left
+	CStdU     *float64 `json:"c_std_u,omitempty"`
+
+	FProbability *float64 `json:"f_probability,omitempty"` // of an F at least as large under a straight line
 }
 
 const ln10 = 2.302585092994046 // nearest to ln 10
@@ -36,8 +39,11 @@ func (m Model) K(phi float64) float64 {
 	return exp10(m.LogKw - float64(m.S*phi) + float64(m.C*phi*phi))
 }
 
-// significantF is from where a parabola is taken: a quarter of the runs' own scatter is then improbable for any number of runs.
-const significantF = 10
+// significant is the probability of an F at least as large under a straight line, below which a parabola is taken.
+const significant = 0.05
+
+// exactly is a residual of log10 k that is no more than rounding.
+const exactly = 1e-12
 
 // fitIsocratic fits the line, and the parabola where four or more runs show that it is needed; with three runs the parabola goes through
 // all of them, so that nothing could show it: the line is kept.
@@ -55,11 +61,15 @@ func fitIsocratic(phi, k []float64) (Model, error) {
 		return line, nil // two compositions only: the line is all there is
 	}
 	dof := float64(len(phi) - 3)
-	if f := (rssLine - rss) / (rss / dof); rss > 0 && !math.IsInf(f, 0) {
-		line.F, parabola.F = &f, &f
-		if f < significantF {
-			return line, nil
-		}
+	rounding := float64(float64(len(phi)) * exactly * exactly)
+	if rssLine <= rounding {
+		return line, nil
+	}
+	rss = max(rss, rounding)
+	f := max(rssLine-rss, 0) / (rss / dof)
+	p := float64(2 * strictmath.TSF(math.Sqrt(f), dof)) // F with 1 and dof degrees of freedom is the square of Student's t
+	line.F, parabola.F, line.FProbability, parabola.FProbability = &f, &f, &p, &p
+	if p < significant {
 		return parabola, nil
 	}
 	return line, nil
@@ -86,26 +96,17 @@ func fit(phi, y []float64, columns int) (Model, float64, error) {
 	if dof := len(y) - columns; dof > 0 {
 		sd := math.Sqrt(rss / float64(dof))
 		m.Residual = &sd
-		if columns == 2 {
-			m.errors(phi, sd)
+		u := func(i int) *float64 { return pointer(float64(sd * math.Sqrt(s.Cov[i][i]))) }
+		m.LogKwStdU, m.SStdU = u(0), u(1)
+		if columns == 3 {
+			m.CStdU = u(2)
 		}
 	}
 	return m, rss, nil
 }
 
-// errors are the standard uncertainties of the line's two coefficients.
-func (m *Model) errors(phi []float64, sd float64) {
-	mean, sxx := strictmath.Mean(phi), 0.0
-	for _, p := range phi {
-		sxx += float64((p - mean) * (p - mean))
-	}
-	s := sd / math.Sqrt(sxx)
-	kw := float64(sd * math.Sqrt(1/float64(len(phi))+float64(mean*mean)/sxx))
-	m.SStdU, m.LogKwStdU = &s, &kw
-}
-
-// gradientTime is the retention in a linear gradient, minutes: (t0/b) log10(2.3 k0 b + 1) + t0 + tD, with b = S Δφ t0/tG and k0 the
-// retention factor at its start. What leaves the column before the gradient reaches it is isocratic.
+// gradientTime is the retention in a linear gradient, minutes: (t0/b) log10(ln 10 (k0 − tD/t0) b + 1) + t0 + tD, with b = S Δφ t0/tG and
+// k0 the retention factor at its start; tD/t0 is for what migrates during the dwell. What leaves the column before the gradient reaches it is isocratic.
 func (m Model) gradientTime(g Gradient, void float64) float64 {
 	k0 := m.K(g.StartPhi)
 	if early := float64(void * (1 + k0)); g.DwellMin > 0 && early <= void+g.DwellMin {
@@ -133,6 +134,10 @@ func fitGradient(runs []Run, t []float64) (Model, error) {
 		}
 	}
 	a, b := runs[first], runs[second]
+	if early := a.VoidMin + min(a.Gradient.DwellMin, b.Gradient.DwellMin); t[first] <= a.VoidMin+a.Gradient.DwellMin && t[second] <= b.VoidMin+b.Gradient.DwellMin {
+		return Model{}, &Error{b.Name, fmt.Sprintf("a retention of %g min beside %g min in run %s", t[second], t[first], a.Name),
+			fmt.Sprintf("one after %g min: what leaves before the gradient comes says nothing of S", early)}
+	}
 	// For each S the first run gives log kw; the second decides.
 	miss := func(s float64) (float64, Model) {
 		m := Model{Algorithm: GradientAlgorithm, S: s}

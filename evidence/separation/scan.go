@@ -145,24 +145,28 @@ func (r *Result) refine(best int, least float64, l Limits) *Best {
 	}
 	b := &Best{Point: top, Holds: top.Resolution >= least, LowTolerated: top.At, HighTolerated: top.At, Predicted: r.Predict(top.At)}
 	if b.Holds {
-		b.LowTolerated, b.HighTolerated = r.drift(top.At, r.LowStudied, least), r.drift(top.At, r.HighStudied, least)
+		b.LowTolerated, b.HighTolerated = r.drift(top.At, r.LowStudied, least, l), r.drift(top.At, r.HighStudied, least, l)
 	}
 	return b
 }
 
-// drift is how far from one composition towards another the resolution holds.
-func (r *Result) drift(from, to, least float64) float64 {
+// drift is how far from one composition towards another the resolution and the limits hold.
+func (r *Result) drift(from, to, least float64, l Limits) float64 {
 	const steps = 400
+	holds := func(at float64) bool {
+		p := r.point(at)
+		return p.Resolution >= least && r.allowed(p, l)
+	}
 	good := from
 	for i := 1; i <= steps; i++ {
 		at := from + float64((to-from)*float64(i))/steps
-		if r.point(at).Resolution >= least {
+		if holds(at) {
 			good = at
 			continue
 		}
 		bad := at
 		for range 60 {
-			if mid := good + (bad-good)/2; r.point(mid).Resolution >= least {
+			if mid := good + (bad-good)/2; holds(mid) {
 				good = mid
 			} else {
 				bad = mid

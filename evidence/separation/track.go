@@ -70,6 +70,7 @@ func byName(runs []Run) ([]Compound, error) {
 // byArea ranks the peaks of each run by area; those of one rank are one compound, named after its place in the first run.
 func byArea(runs []Run) ([]Compound, error) {
 	var list []Compound
+	var first []float64 // share of the area of each rank in the first run
 	for i, r := range runs {
 		if len(r.Peaks) != len(runs[0].Peaks) {
 			return nil, &Error{r.Name, fmt.Sprintf("%d peaks", len(r.Peaks)), fmt.Sprintf("%d, as in run %s; or names, where peaks fall together", len(runs[0].Peaks), runs[0].Name)}
@@ -89,6 +90,16 @@ func byArea(runs []Run) ([]Compound, error) {
 			list = make([]Compound, len(order))
 		}
 		for rank, k := range order {
+			share, before := r.Peaks[k].Area/total(r), 0.0
+			if i > 0 {
+				before = first[rank]
+				if math.Abs(share-before) > float64(apart*before) {
+					return nil, &Error{r.Name, fmt.Sprintf("%.3g %% of the area in the peak at %g min", float64(100*share), r.Peaks[k].RetentionMin),
+						fmt.Sprintf("%.3g %% to within 15 %%, as of %s in run %s; or names: peaks may fall together", float64(100*before), list[rank].Name, runs[0].Name)}
+				}
+			} else {
+				first = append(first, share)
+			}
 			if i == 0 {
 				list[rank].Name = fmt.Sprintf("peak %d", k+1)
 			}
@@ -96,4 +107,12 @@ func byArea(runs []Run) ([]Compound, error) {
 		}
 	}
 	return list, nil
+}
+
+func total(r Run) float64 {
+	sum := 0.0
+	for _, p := range r.Peaks {
+		sum += p.Area
+	}
+	return sum
 }

@@ -82,7 +82,7 @@ type Point struct {
 // Best is the recommended composition.
 type Best struct {
 	Point
-	LowTolerated  float64     `json:"lowest_tolerated"` // how far the composition may drift before the resolution falls under the limit, within the study
+	LowTolerated  float64     `json:"lowest_tolerated"` // how far the composition may drift before the resolution falls under its limit, or the time or a retention factor leaves theirs, within the study
 	HighTolerated float64     `json:"highest_tolerated"`
 	Holds         bool        `json:"resolution_reached"` // whether the limit is reached at all
 	Predicted     []Predicted `json:"predicted"`
