@@ -71,7 +71,7 @@ func rootCommand(s streams) *cobra.Command {
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
 		return &failure{exitUsage, err, "see " + cmd.CommandPath() + " -h"}
 	})
-	root.AddCommand(demoCommand(s), newCommand(s), checkCommand(s), buildCommand(s), signCommand(s), verifyCommand(s), showCommand(s), scoutCommand(s),
+	root.AddCommand(demoCommand(s), newCommand(s), checkCommand(s), buildCommand(s), signCommand(s), verifyCommand(s), showCommand(s), scoutCommand(s), appraiseCommand(s),
 		identityCommand(s), schemaCommand(s), criteriaCommand(s))
 	return root
 }
