@@ -15,6 +15,7 @@ type Merit struct {
 	CountingNoise *peak.CountingNoise      `json:"counting_noise,omitempty"`
 	Figures       *peak.Figures            `json:"figures,omitempty"`
 	AreaBudget    *peak.AreaBudget         `json:"area_budget,omitempty"`
+	Hindrances    []peak.Hindrance         `json:"hindrances,omitempty"`   // why the peak should not be quantified; none: it can be
 	PercentArea   *float64                 `json:"percent_area,omitempty"` // of all peaks found in the trace
 	Neighbours    []Neighbour              `json:"neighbours,omitempty"`   // the one before and the one after
 	Alternatives  []Alternative            `json:"alternatives,omitempty"` // of a peak that shares a cluster: its area by other ways to divide it
@@ -61,9 +62,34 @@ func meritOf(c trace.Chromatogram, found *peak.Result, p *peak.Peak, rec *Record
 	m.PercentArea = percentArea(found, p)
 	if m.Figures != nil {
 		m.neighbours(c, found, p, rec)
+		m.Hindrances = peak.Hindrances(p, m.Figures, m.pairs(), quantityLimits(rec))
 	}
 	m.Alternatives, err = alternatives(c, found, p, noise)
 	return m, err
+}
+
+func (m *Merit) pairs() []peak.PairFigures {
+	var list []peak.PairFigures
+	for _, n := range m.Neighbours {
+		list = append(list, n.PairFigures)
+	}
+	return list
+}
+
+// quantityLimits are the ratio 2H/h of 10 at which peaks begin to be quantified (ICH Q2, from memory), and what the method states.
+func quantityLimits(rec *Record) peak.QuantityLimits {
+	l := peak.QuantityLimits{MinSignalToNoise: 10}
+	if s := rec.Method.Suitability; s != nil {
+		l.MinResolution, l.MinSymmetry, l.MaxSymmetry = given(s.Resolution), given(s.SymmetryLow), given(s.SymmetryHigh)
+	}
+	return l
+}
+
+func given(v *float64) float64 {
+	if v == nil {
+		return 0
+	}
+	return *v
 }
 
 // absent tells of errors that say only that something cannot be had from a trace.

@@ -43,12 +43,12 @@ func (d *document) merit(k int) {
 			}
 		}
 	}
-	d.table(table{name: "merit", columns: "wlddddddddddd", rows: rows, size: 6.8})
+	d.table(table{name: "merit", columns: "wldddddddddddl", rows: rows, size: 6.8})
 	d.note(d.t("merit.note"))
 }
 
 func (d *document) meritCells(name string, m *evidence.Measurement) []cell {
-	f, texts := m.Merit.Figures, make([]string, 11)
+	f, texts := m.Merit.Figures, make([]string, 12)
 	for i := range texts {
 		texts[i] = missing
 	}
@@ -72,5 +72,14 @@ func (d *document) meritCells(name string, m *evidence.Measurement) []cell {
 	}
 	texts[8], texts[9] = optNumber(alpha, 4), optNumber(valley, 3)
 	texts[10] = optNumber(m.Merit.PercentArea, 3)
+	if f != nil {
+		texts[11] = d.t("yes")
+		for i, h := range m.Merit.Hindrances {
+			if i == 0 {
+				texts[11] = ""
+			}
+			texts[11] = joined(", ", texts[11], d.words.or("cannot.", h.Reason))
+		}
+	}
 	return cells(append([]string{name, d.words.or("trace.", m.Trace)}, texts...)...)
 }
