@@ -21,6 +21,7 @@ func (j *judge) caseChecks() {
 	j.files()
 	j.manual()
 	j.warnings()
+	j.history()
 	j.deviations()
 }
 

@@ -67,6 +67,9 @@ func Evaluate(fsys fs.FS, folder *casefile.Folder, engine Engine) (*Evaluation, 
 		}
 		rec.Analytes = append(rec.Analytes, out)
 	}
+	if rec.History, err = controlHistory(fsys, folder, rec); err != nil {
+		return nil, err
+	}
 	return ev, nil
 }
 

@@ -26,8 +26,9 @@ type Record struct {
 	Injections  []Injection      `json:"injections"`                 // in acquisition order, one for each row of the sequence
 	Separation  *SeparationStudy `json:"separation_study,omitempty"` // why these conditions were chosen
 	CrossChecks []CrossCheck     `json:"cross_checks,omitempty"`     // what does not agree between raw files, or between them and the sequence
-	Suitability []Suitability    `json:"suitability,omitempty"`      // of the system over the batch
-	Analytes    []Analyte        `json:"analytes"`                   // those requested, in the method's order
+	History     *ControlHistory  `json:"control_history,omitempty"`
+	Suitability []Suitability    `json:"suitability,omitempty"` // of the system over the batch
+	Analytes    []Analyte        `json:"analytes"`              // those requested, in the method's order
 }
 
 // An Engine is the program that made a record.

@@ -37,6 +37,9 @@ func (d *document) packageSections() []section {
 	if len(d.in.Record.Suitability) > 0 {
 		list = append(list, section{key: "suitability", title: d.t("suitability.title"), level: 1, need: 50, draw: d.suitability})
 	}
+	if d.in.Record.History != nil {
+		list = append(list, section{key: "history", title: d.t("history.title"), level: 1, need: 70, draw: d.history})
+	}
 	if d.hasStored() {
 		list = append(list, section{key: "stored", title: d.t("stored.title"), level: 1, need: 50, draw: d.stored})
 	}

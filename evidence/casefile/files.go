@@ -96,8 +96,14 @@ func (l *loader) checkFiles() {
 		}
 		known[row.File] = true
 	}
-	if c.Study != "" {
-		known[c.Study] = true
+	for key, name := range map[string]string{"separation_study": c.Study, "control_history": c.ControlHistory} {
+		if name == "" {
+			continue
+		}
+		known[name] = true
+		if got, hint := l.missing(name); key == "control_history" && got != "" {
+			l.inCase(key, got, "the path of a file in the case folder", hint)
+		}
 	}
 	for _, f := range l.folder.StudyFiles() {
 		known[f] = true

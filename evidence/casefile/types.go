@@ -25,10 +25,11 @@ type Case struct {
 	Sample     Sample     `json:"sample" key:"sample" doc:"The sample, by code numbers only."`
 	Request    Request    `json:"request" key:"request" doc:"What was asked."`
 
-	MethodFile   string `json:"method" key:"method" format:"path" doc:"The method, a file in this folder."`             // path inside the folder, forward slashes
-	SequenceFile string `json:"sequence" key:"sequence" format:"path" doc:"The injection list, a file in this folder."` // path inside the folder
-	Study        string `json:"separation_study,omitempty" key:"separation_study,optional" format:"path" doc:"A study of the separation, a file in this folder."`
-	Criteria     string `json:"criteria" key:"criteria" doc:"Name of a built-in criteria set, or the path of a file in this folder."` // name of a built-in set, or path of a file inside the folder
+	MethodFile     string `json:"method" key:"method" format:"path" doc:"The method, a file in this folder."`             // path inside the folder, forward slashes
+	SequenceFile   string `json:"sequence" key:"sequence" format:"path" doc:"The injection list, a file in this folder."` // path inside the folder
+	Study          string `json:"separation_study,omitempty" key:"separation_study,optional" format:"path" doc:"A study of the separation, a file in this folder."`
+	ControlHistory string `json:"control_history,omitempty" key:"control_history,optional" format:"path" doc:"A table of the controls of earlier batches, a file in this folder."`
+	Criteria       string `json:"criteria" key:"criteria" doc:"Name of a built-in criteria set, or the path of a file in this folder."` // name of a built-in set, or path of a file inside the folder
 
 	People      []Person            `json:"people" key:"people" minitems:"1" doc:"Everyone who acted in the case, by code."`
 	Signatories []Signatory         `json:"signatories" key:"signatories" minitems:"1" doc:"Who is to sign, and what each signature means."`
