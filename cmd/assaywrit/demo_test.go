@@ -3,6 +3,7 @@ package main
 import (
 	"archive/zip"
 	"bytes"
+	"encoding/json"
 	"io"
 	"io/fs"
 	"os"
@@ -13,6 +14,8 @@ import (
 	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
+
+	"assaywrit/evidence"
 )
 
 // demoDir is a demo made once for all tests, in a folder that lasts as long as they do.
@@ -79,6 +82,29 @@ func demoAssessment(t testing.TB) *assessment {
 		t.Fatal(err)
 	}
 	return a
+}
+
+// builtRecord builds the case in dir, sees the bundle verified, and returns its record and its files.
+func builtRecord(t testing.TB, dir string) (*evidence.Record, map[string][]byte) {
+	t.Helper()
+	path := filepath.Join(t.TempDir(), "b.zip")
+	var out, errs bytes.Buffer
+	if status := run([]string{"build", dir, "--output", path}, nil, &out, &errs); status != exitDone {
+		t.Fatalf("status %d: %s", status, &errs)
+	}
+	data, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, so, _ := verified(t, data); !strings.Contains(so, "every recorded value and decision is the same") {
+		t.Errorf("verify: %s", so)
+	}
+	_, content := unzipped(t, data)
+	var rec evidence.Record
+	if err := json.Unmarshal(content["data/evidence/evidence.json"], &rec); err != nil {
+		t.Fatal(err)
+	}
+	return &rec, content
 }
 
 // unzipped reads all entries of a zip, in order.

@@ -2,14 +2,11 @@ package main
 
 import (
 	"bytes"
-	"encoding/json"
 	"fmt"
 	"os"
 	"path/filepath"
 	"strings"
 	"testing"
-
-	"assaywrit/evidence"
 )
 
 // writeHistory writes the controls of twenty earlier batches, scaled about the nominal values by shift.
@@ -48,23 +45,7 @@ func TestHistoryInTheBundle(t *testing.T) {
 		t.Run(tt.name, func(t *testing.T) {
 			dir := copyCase(t)
 			writeHistory(t, dir, tt.shift)
-			path := filepath.Join(t.TempDir(), "b.zip")
-			var out, errs bytes.Buffer
-			if status := run([]string{"build", dir, "--output", path}, nil, &out, &errs); status != exitDone {
-				t.Fatalf("status %d: %s", status, &errs)
-			}
-			data, err := os.ReadFile(path)
-			if err != nil {
-				t.Fatal(err)
-			}
-			if _, so, _ := verified(t, data); !strings.Contains(so, "every recorded value and decision is the same") {
-				t.Errorf("verify: %s", so)
-			}
-			_, content := unzipped(t, data)
-			var rec evidence.Record
-			if err := json.Unmarshal(content["data/evidence/evidence.json"], &rec); err != nil {
-				t.Fatal(err)
-			}
+			rec, content := builtRecord(t, dir)
 			if rec.History == nil || len(rec.History.Judgement.Results) == 0 || (len(rec.History.Judgement.Signals) > 0) != tt.signals || content["data/inputs/case/controls.csv"] == nil {
 				t.Errorf("history %+v", rec.History)
 			}

@@ -149,30 +149,14 @@ func TestStudyInTheBundle(t *testing.T) {
 	dir := copyCase(t)
 	writeStudy(t, filepath.Join(dir, "study"), true)
 	edit(t, dir, "case.yaml", "sequence: sequence.csv", "sequence: sequence.csv\nseparation_study: study/study.yaml")
-	path := filepath.Join(t.TempDir(), "b.zip")
-	var out, errs bytes.Buffer
-	if status := run([]string{"build", dir, "--output", path}, nil, &out, &errs); status != exitDone {
-		t.Fatalf("status %d: %s", status, &errs)
-	}
-	data, err := os.ReadFile(path)
-	if err != nil {
-		t.Fatal(err)
-	}
-	if _, so, _ := verified(t, data); !strings.Contains(so, "every recorded value and decision is the same") {
-		t.Errorf("verify: %s", so)
-	}
-	_, content := unzipped(t, data)
-	var rec evidence.Record
-	if err := json.Unmarshal(content["data/evidence/evidence.json"], &rec); err != nil {
-		t.Fatal(err)
-	}
+	rec, content := builtRecord(t, dir)
 	if rec.Separation == nil || rec.Separation.Result.Best == nil || len(rec.Separation.Runs) != 3 || content["data/inputs/case/study/run-34.mzML"] == nil {
 		t.Errorf("the study is not in the bundle: %+v", rec.Separation)
 	}
 	if err := os.Remove(filepath.Join(dir, "study", "run-34.mzML")); err != nil {
 		t.Fatal(err)
 	}
-	errs.Reset()
+	var out, errs bytes.Buffer
 	if status := run([]string{"check", dir}, nil, &out, &errs); status != exitRefused || !strings.Contains(errs.String(), "study/study.yaml:") {
 		t.Errorf("a run that is missing: status %d, %s", status, &errs)
 	}
